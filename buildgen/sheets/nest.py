@@ -1,0 +1,241 @@
+"""Nesting: flat parts on as few sheets as can be, the last one with the largest piece left."""
+
+from __future__ import annotations
+
+from collections.abc import Sequence
+from dataclasses import dataclass
+
+from shapely.geometry import Polygon
+
+from buildgen.problems import DesignError, Problem
+from buildgen.sheets.nest_check import layout_is_sound
+from buildgen.sheets.nest_fill import Filling, Item, Shapes, lay
+from buildgen.sheets.nest_leftover import largest_leftover
+from buildgen.sheets.nest_search import best_filling
+from buildgen.sheets.nest_sheet import Kind, Sheet, kind_of, new_sheet
+from buildgen.sheets.nest_types import (
+    Effort,
+    NestFixed,
+    NestLayout,
+    NestPart,
+    NestPlacement,
+    NestResult,
+    NestStock,
+    placed,
+)
+
+CELLS = 160_000
+TRIES: dict[str, int] = {"quick": 2, "normal": 20, "high": 100}
+
+
+def nest(
+    parts: Sequence[NestPart],
+    stock: Sequence[NestStock],
+    *,
+    spacing_mm: float,
+    margin_mm: float,
+    effort: Effort = "normal",
+    fixed: Sequence[NestFixed] = (),
+) -> NestResult:
+    """Lay flat parts on sheets.
+
+    Fewest sheets first, then the shortest length used of the last one. Sheets that hold fixed
+    parts and stock of limited quantity that is smaller than the rest (offcuts) are used first
+    where that saves material. The search is bounded by counts, never by a clock: the same input
+    gives the same layouts.
+
+    Args:
+        parts: what to cut; small parts may end up inside the openings of large ones.
+        stock: sheets at hand.
+        spacing_mm: least gap between two parts; 0 or more.
+        margin_mm: least gap between a part and the edge of the sheet; 0 or more.
+        effort: how long to search: "quick", "normal" or "high".
+        fixed: parts that already have their place.
+
+    Returns:
+        Layouts, all checked with the true outlines: spacing and margin are kept to 0.001 mm.
+
+    Raises:
+        DesignError: an input makes no sense, a part fits on no sheet, or the stock runs out.
+    """
+    _refuse(_faults(parts, stock, fixed, spacing_mm, margin_mm, effort))
+    kinds = [k for s in stock if (k := kind_of(s, spacing_mm, margin_mm, CELLS)) is not None]
+    items, shapes = _items(parts, spacing_mm)
+    begun = _begun(kinds, fixed)
+    items = _with_fitting_turns(items, shapes, kinds, parts, stock, margin_mm)
+    job = _Job(parts, items, shapes, fixed, spacing_mm, margin_mm)
+    filling = best_filling(items, shapes, kinds, begun, TRIES[effort]) if items else Filling([], [])
+    _refuse(_ran_out(filling, items, parts))
+    return job.result(filling, begun)
+
+
+@dataclass(frozen=True)
+class _Job:
+    parts: Sequence[NestPart]
+    items: Sequence[Item]
+    shapes: Shapes
+    fixed: Sequence[NestFixed]
+    spacing_mm: float
+    margin_mm: float
+
+    def result(self, filling: Filling, begun: Sequence[Sheet]) -> NestResult:
+        """Layouts of the sheets, each checked; sheets with old parts only are told as well."""
+        used = filling.used()
+        idle = [
+            s for s in begun if not any(u.kind is s.kind and u.number == s.number for u in used)
+        ]
+        shares = [s.reach / s.kind.counts[0] for s in used]
+        equivalent = len(used) - 1 + min(shares) if used else 0.0
+        return NestResult(tuple(self._layout(s) for s in [*used, *idle]), equivalent)
+
+    def _layout(self, sheet: Sheet) -> NestLayout:
+        placements = []
+        for index, spot in sorted(zip(sheet.items, sheet.spots, strict=True)):
+            item = self.items[index]
+            placements.append(sheet.kind.to_sheet(spot, self.parts[item.part].id, item.copy))
+        return self._checked(sheet.kind.stock, sheet.number, placements, sheet.fixed)
+
+    def _checked(
+        self,
+        stock: NestStock,
+        number: int,
+        placements: Sequence[NestPlacement],
+        fixed: tuple[NestFixed, ...],
+    ) -> NestLayout:
+        by_id = {p.id: p for p in self.parts}
+        lying = [placed(by_id[p.part_id], p) for p in placements]
+        old = [f.polygon for f in fixed]
+        outline = stock.outline
+        if not layout_is_sound(outline, lying, old, self.spacing_mm, self.margin_mm):
+            raise AssertionError(f"unsound layout of {stock.id}")
+        area = sum(p.area for p in (*lying, *old)) / outline.area
+        leftover = largest_leftover(outline, [*lying, *old], self.spacing_mm)
+        return NestLayout(stock.id, number, outline, tuple(placements), fixed, area, leftover)
+
+
+def _refuse(problems: Sequence[Problem]) -> None:
+    if problems:
+        raise DesignError(*problems)
+
+
+def _faults(
+    parts: Sequence[NestPart],
+    stock: Sequence[NestStock],
+    fixed: Sequence[NestFixed],
+    spacing_mm: float,
+    margin_mm: float,
+    effort: str,
+) -> list[Problem]:
+    """Everything about the input that makes no sense."""
+    found = []
+    if not stock:
+        found.append(Problem("stock", "No sheets to cut from.", "Give at least one."))
+    for name, value in (("spacing_mm", spacing_mm), ("margin_mm", margin_mm)):
+        if not 0.0 <= value < float("inf"):
+            found.append(Problem(name, f"{value:g} is not a length of 0 or more."))
+    if effort not in TRIES:
+        found.append(Problem("effort", f'"{effort}" is unknown.', f"Known: {', '.join(TRIES)}."))
+    found += _repeated("parts", [p.id for p in parts]) + _repeated("stock", [s.id for s in stock])
+    for part in parts:
+        if not _is_area(part.polygon):
+            found.append(Problem(part.id, "Its outline is not a valid area."))
+        if part.quantity < 1 or not part.angles_deg or part.lean_deg < 0.0:
+            found.append(Problem(part.id, "It needs a quantity, an angle and a lean of 0 or more."))
+    for sheet in stock:
+        if sheet.polygon is None and min(sheet.width_mm, sheet.height_mm) <= 0.0:
+            found.append(Problem(sheet.id, "A sheet needs a width and a height above 0."))
+        elif not _is_area(sheet.outline):
+            found.append(Problem(sheet.id, "Its outline is not a valid area."))
+    known = {s.id for s in stock}
+    for old in fixed:
+        if old.stock_id not in known or old.sheet < 0 or not _is_area(old.polygon):
+            found.append(Problem(old.id or "fixed", f'It does not lie on a sheet "{old.stock_id}".'))
+    return found
+
+
+def _repeated(path: str, ids: Sequence[str]) -> list[Problem]:
+    twice = sorted({i for i in ids if ids.count(i) > 1})
+    return [Problem(path, f'"{i}" is there twice.', "Give each its own name.") for i in twice]
+
+
+def _is_area(polygon: Polygon) -> bool:
+    return isinstance(polygon, Polygon) and polygon.is_valid and polygon.area > 0.0
+
+
+def _items(parts: Sequence[NestPart], spacing_mm: float) -> tuple[list[Item], Shapes]:
+    """All copies, and the distinct outlines among the parts."""
+    numbers: dict[bytes, int] = {}
+    outlines = []
+    items = []
+    for p, part in enumerate(parts):
+        shape = numbers.setdefault(part.polygon.wkb, len(numbers))
+        if shape == len(outlines):
+            outlines.append(part.polygon)
+        sides = (False, True) if part.flip else (False,)
+        turns = tuple((side, float(angle) % 360.0) for side in sides for angle in part.angles_deg)
+        items += [Item(p, c, shape, turns, part.lean_deg) for c in range(part.quantity)]
+    return items, Shapes(outlines, spacing_mm / 2.0)
+
+
+def _begun(kinds: Sequence[Kind], fixed: Sequence[NestFixed]) -> list[Sheet]:
+    """Sheets that already hold parts."""
+    found = []
+    for kind in kinds:
+        here = [f for f in fixed if f.stock_id == kind.stock.id]
+        for number in sorted({f.sheet for f in here}):
+            found.append(new_sheet(kind, number, [f for f in here if f.sheet == number]))
+    return found
+
+
+def _with_fitting_turns(
+    items: Sequence[Item],
+    shapes: Shapes,
+    kinds: Sequence[Kind],
+    parts: Sequence[NestPart],
+    stock: Sequence[NestStock],
+    margin_mm: float,
+) -> list[Item]:
+    """The items; those that fit on a bare sheet only when leaning get these turns as well."""
+    turns: dict[int, tuple[tuple[bool, float], ...] | None] = {}
+    for item in items:
+        if item.part in turns:
+            continue
+        leans = [item.lean_deg * f for f in (0.0, -1.0, 1.0, -0.5, 0.5)] if item.lean_deg else [0.0]
+        turns[item.part] = None
+        for lean in leans:
+            tried = tuple((side, (angle + lean) % 360.0) for side, angle in item.turns)
+            trial = Item(item.part, 0, item.shape, tried, 0.0)
+            if any(lay(Sheet(k, 0, (), k.empty.copy()), 0, trial, shapes) for k in kinds):
+                turns[item.part] = tried if lean == 0.0 else item.turns + tried
+                break
+    _refuse([_too_large(parts[p], stock, margin_mm) for p, t in turns.items() if t is None])
+    return [
+        Item(i.part, i.copy, i.shape, turns[i.part] or i.turns, i.lean_deg) for i in items
+    ]
+
+
+def _too_large(part: NestPart, stock: Sequence[NestStock], margin_mm: float) -> Problem:
+    x0, y0, x1, y1 = part.polygon.bounds
+    largest = max(stock, key=lambda s: s.outline.area)
+    a, b, c, d = largest.outline.bounds
+    return Problem(
+        part.id,
+        f"Its {x1 - x0:.1f} x {y1 - y0:.1f} mm fit on no sheet; the largest, {largest.id},"
+        f" has {c - a:.1f} x {d - b:.1f} mm with {margin_mm:g} mm of margin.",
+        "Divide the part, allow other angles, or give a larger sheet.",
+    )
+
+
+def _ran_out(filling: Filling, items: Sequence[Item], parts: Sequence[NestPart]) -> list[Problem]:
+    """One problem for each part that found no room because all sheets are full."""
+    short: dict[int, int] = {}
+    for index in filling.left:
+        short[items[index].part] = short.get(items[index].part, 0) + 1
+    return [
+        Problem(
+            parts[p].id,
+            f"No room is left for {n} of {parts[p].quantity} on the sheets at hand.",
+            "Add sheets.",
+        )
+        for p, n in sorted(short.items())
+    ]
