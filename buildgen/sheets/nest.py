@@ -9,9 +9,10 @@ from shapely.geometry import Polygon
 
 from buildgen.problems import DesignError, Problem
 from buildgen.sheets.nest_check import layout_is_sound
+from buildgen.sheets.nest_ease import Easing
 from buildgen.sheets.nest_fill import Filling, Item, Shapes, lay
 from buildgen.sheets.nest_leftover import largest_leftover
-from buildgen.sheets.nest_search import best_filling
+from buildgen.sheets.nest_search import best_filling, score
 from buildgen.sheets.nest_sheet import Kind, Sheet, kind_of, new_sheet
 from buildgen.sheets.nest_types import (
     Effort,
@@ -26,6 +27,9 @@ from buildgen.sheets.nest_types import (
 
 CELLS = 160_000
 TRIES: dict[str, int] = {"quick": 2, "normal": 20, "high": 100}
+# points held against outlines, in all and for each copy; about 100 million take a second
+WORK_LEAST = {"quick": 20_000_000, "normal": 300_000_000, "high": 1_500_000_000}
+WORK_EACH = {"quick": 800_000, "normal": 14_000_000, "high": 80_000_000}
 
 
 def nest(
@@ -64,9 +68,13 @@ def nest(
     begun = _begun(kinds, fixed)
     items = _with_fitting_turns(items, shapes, kinds, parts, stock, margin_mm)
     job = _Job(parts, items, shapes, fixed, spacing_mm, margin_mm)
-    filling = best_filling(items, shapes, kinds, begun, TRIES[effort]) if items else Filling([], [])
+    if not items:
+        return job.result(Filling([], []), begun)
+    filling = best_filling(items, shapes, kinds, begun, TRIES[effort])
     _refuse(_ran_out(filling, items, parts))
-    return job.result(filling, begun)
+    easing = Easing(filling, items, shapes, kinds, spacing_mm, margin_mm)
+    easing.shorten(max(WORK_LEAST[effort], WORK_EACH[effort] * len(items)))
+    return job.result(min(filling, easing.filling(), key=lambda f: score(f, kinds)), begun)
 
 
 @dataclass(frozen=True)
@@ -84,8 +92,7 @@ class _Job:
         idle = [
             s for s in begun if not any(u.kind is s.kind and u.number == s.number for u in used)
         ]
-        shares = [s.reach / s.kind.counts[0] for s in used]
-        equivalent = len(used) - 1 + min(shares) if used else 0.0
+        equivalent = len(used) - 1 + min(s.share for s in used) if used else 0.0
         return NestResult(tuple(self._layout(s) for s in [*used, *idle]), equivalent)
 
     def _layout(self, sheet: Sheet) -> NestLayout:

@@ -90,7 +90,7 @@ def _settle(sheet: Sheet, index: int, mask: Mask, best: tuple[int, int, int, Key
     y = kind.corner[1] + iy * kind.cell[1] + mask.at[1]
     sheet.items.append(index)
     sheet.spots.append(Spot(x, y, angle, flipped))
-    sheet.reach = max(sheet.reach, end)
+    sheet.end_mm = max(sheet.end_mm, kind.corner[0] + end * kind.cell[0] - kind.half)
 
 
 @dataclass

@@ -41,9 +41,9 @@ def grown(polygon: Polygon, by_mm: float) -> Polygon:
 
 
 @compiled
-def _fill(edges: Any, nx: int, ny: int, hx: float, hy: float) -> Any:
-    """Cells whose centre is inside, by the even-odd rule."""
-    cells = np.zeros((nx, ny), np.bool_)
+def _fill(edges: Any, cells: Any, hx: float, hy: float) -> None:
+    """Set the cells whose centre is inside, by the even-odd rule."""
+    nx, ny = cells.shape
     for e in range(edges.shape[0]):
         x0, y0, x1, y1 = edges[e, 0], edges[e, 1], edges[e, 2], edges[e, 3]
         if x0 > x1:
@@ -55,7 +55,6 @@ def _fill(edges: Any, nx: int, ny: int, hx: float, hy: float) -> Any:
                 top = min(ny, max(0, int(math.ceil(y / hy - 0.5))))
                 for j in range(top):
                     cells[i, j] = not cells[i, j]
-    return cells
 
 
 @compiled
@@ -82,7 +81,8 @@ def _touch(edges: Any, cells: Any, hx: float, hy: float, value: bool) -> None:
 def touched(polygon: Polygon, nx: int, ny: int, hx: float, hy: float) -> Cells:
     """The (nx, ny) cells that the polygon touches; its corner (0, 0) is that of the grid."""
     edges = edges_of(polygon)
-    cells: Cells = _fill(edges, nx, ny, hx, hy)
+    cells = np.zeros((nx, ny), np.bool_)
+    _fill(edges, cells, hx, hy)
     _touch(edges, cells, hx, hy, True)
     return cells
 
@@ -90,7 +90,8 @@ def touched(polygon: Polygon, nx: int, ny: int, hx: float, hy: float) -> Cells:
 def wholly_inside(polygon: Polygon, nx: int, ny: int, hx: float, hy: float) -> Cells:
     """The (nx, ny) cells that lie inside the polygon with no edge through them."""
     edges = edges_of(polygon)
-    cells: Cells = _fill(edges, nx, ny, hx, hy)
+    cells = np.zeros((nx, ny), np.bool_)
+    _fill(edges, cells, hx, hy)
     _touch(edges, cells, hx, hy, False)
     return cells
 

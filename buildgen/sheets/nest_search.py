@@ -81,7 +81,7 @@ def score(filling: Filling, kinds: Sequence[Kind]) -> Score:
 
 def _used(sheets: Sequence[Sheet], area: bool) -> float:
     """Sheets used up, the emptiest counted by its length taken; as area or as a number."""
-    shares = [s.reach / s.kind.counts[0] for s in sheets]
+    shares = [s.share for s in sheets]
     sizes = [s.kind.inside.area if area else 1.0 for s in sheets]
     if not sheets:
         return 0.0

@@ -89,7 +89,13 @@ class Sheet:
     items: list[int] = field(default_factory=list)
     spots: list[Spot] = field(default_factory=list)
     hints: dict[Key, int] = field(default_factory=dict)
-    reach: int = 0
+    end_mm: float = -math.inf
+
+    @property
+    def share(self) -> float:
+        """How much of the usable length is taken up by new parts."""
+        x0, _, x1, _ = self.kind.room
+        return max(0.0, self.end_mm - x0) / (x1 - x0)
 
     def again(self) -> Sheet:
         """A fresh copy with nothing new on it."""
