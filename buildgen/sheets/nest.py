@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 from shapely.geometry import Polygon
 
@@ -11,6 +11,14 @@ from buildgen.problems import DesignError, Problem
 from buildgen.sheets.nest_check import layout_is_sound
 from buildgen.sheets.nest_ease import Easing
 from buildgen.sheets.nest_fill import Filling, Item, Shapes, lay
+from buildgen.sheets.nest_input import (
+    faulty_fixed,
+    faulty_numbers,
+    faulty_parts,
+    faulty_stock,
+    ran_out,
+    too_large,
+)
 from buildgen.sheets.nest_leftover import largest_leftover
 from buildgen.sheets.nest_search import best_filling, score
 from buildgen.sheets.nest_sheet import Kind, Sheet, kind_of, new_sheet
@@ -26,10 +34,28 @@ from buildgen.sheets.nest_types import (
 )
 
 CELLS = 160_000
-TRIES: dict[str, int] = {"quick": 2, "normal": 20, "high": 100}
-# points held against outlines, in all and for each copy; about 100 million take a second
-WORK_LEAST = {"quick": 20_000_000, "normal": 300_000_000, "high": 1_500_000_000}
-WORK_EACH = {"quick": 800_000, "normal": 14_000_000, "high": 80_000_000}
+
+
+@dataclass(frozen=True)
+class _Bounds:
+    """How much to search.
+
+    Attributes:
+        tries: changed orders when filling sheets.
+        work_least: points held against outlines when easing; about 100 million take a second.
+        work_each: the same for each copy; the larger of the two sums counts.
+    """
+
+    tries: int
+    work_least: int
+    work_each: int
+
+
+EFFORTS = {
+    "quick": _Bounds(2, 20_000_000, 800_000),
+    "normal": _Bounds(20, 300_000_000, 14_000_000),
+    "high": _Bounds(100, 1_500_000_000, 80_000_000),
+}
 
 
 def nest(
@@ -62,7 +88,14 @@ def nest(
     Raises:
         DesignError: an input makes no sense, a part fits on no sheet, or the stock runs out.
     """
-    _refuse(_faults(parts, stock, fixed, spacing_mm, margin_mm, effort))
+    _refuse(
+        [
+            *faulty_numbers(spacing_mm, margin_mm, effort, EFFORTS),
+            *faulty_parts(parts),
+            *faulty_stock(stock),
+            *faulty_fixed(fixed, stock),
+        ]
+    )
     kinds = [k for s in stock if (k := kind_of(s, spacing_mm, margin_mm, CELLS)) is not None]
     items, shapes = _items(parts, spacing_mm)
     begun = _begun(kinds, fixed)
@@ -70,10 +103,11 @@ def nest(
     job = _Job(parts, items, shapes, fixed, spacing_mm, margin_mm)
     if not items:
         return job.result(Filling([], []), begun)
-    filling = best_filling(items, shapes, kinds, begun, TRIES[effort])
-    _refuse(_ran_out(filling, items, parts))
+    bounds = EFFORTS[effort]
+    filling = best_filling(items, shapes, kinds, begun, bounds.tries)
+    _refuse(ran_out(filling.left, items, parts))
     easing = Easing(filling, items, shapes, kinds, spacing_mm, margin_mm)
-    easing.shorten(max(WORK_LEAST[effort], WORK_EACH[effort] * len(items)))
+    easing.shorten(max(bounds.work_least, bounds.work_each * len(items)))
     return job.result(min(filling, easing.filling(), key=lambda f: score(f, kinds)), begun)
 
 
@@ -125,54 +159,10 @@ def _refuse(problems: Sequence[Problem]) -> None:
         raise DesignError(*problems)
 
 
-def _faults(
-    parts: Sequence[NestPart],
-    stock: Sequence[NestStock],
-    fixed: Sequence[NestFixed],
-    spacing_mm: float,
-    margin_mm: float,
-    effort: str,
-) -> list[Problem]:
-    """Everything about the input that makes no sense."""
-    found = []
-    if not stock:
-        found.append(Problem("stock", "No sheets to cut from.", "Give at least one."))
-    for name, value in (("spacing_mm", spacing_mm), ("margin_mm", margin_mm)):
-        if not 0.0 <= value < float("inf"):
-            found.append(Problem(name, f"{value:g} is not a length of 0 or more."))
-    if effort not in TRIES:
-        found.append(Problem("effort", f'"{effort}" is unknown.', f"Known: {', '.join(TRIES)}."))
-    found += _repeated("parts", [p.id for p in parts]) + _repeated("stock", [s.id for s in stock])
-    for part in parts:
-        if not _is_area(part.polygon):
-            found.append(Problem(part.id, "Its outline is not a valid area."))
-        if part.quantity < 1 or not part.angles_deg or part.lean_deg < 0.0:
-            found.append(Problem(part.id, "It needs a quantity, an angle and a lean of 0 or more."))
-    for sheet in stock:
-        if sheet.polygon is None and min(sheet.width_mm, sheet.height_mm) <= 0.0:
-            found.append(Problem(sheet.id, "A sheet needs a width and a height above 0."))
-        elif not _is_area(sheet.outline):
-            found.append(Problem(sheet.id, "Its outline is not a valid area."))
-    known = {s.id for s in stock}
-    for old in fixed:
-        if old.stock_id not in known or old.sheet < 0 or not _is_area(old.polygon):
-            found.append(Problem(old.id or "fixed", f'It does not lie on a sheet "{old.stock_id}".'))
-    return found
-
-
-def _repeated(path: str, ids: Sequence[str]) -> list[Problem]:
-    twice = sorted({i for i in ids if ids.count(i) > 1})
-    return [Problem(path, f'"{i}" is there twice.', "Give each its own name.") for i in twice]
-
-
-def _is_area(polygon: Polygon) -> bool:
-    return isinstance(polygon, Polygon) and polygon.is_valid and polygon.area > 0.0
-
-
 def _items(parts: Sequence[NestPart], spacing_mm: float) -> tuple[list[Item], Shapes]:
     """All copies, and the distinct outlines among the parts."""
     numbers: dict[bytes, int] = {}
-    outlines = []
+    outlines: list[Polygon] = []
     items = []
     for p, part in enumerate(parts):
         shape = numbers.setdefault(part.polygon.wkb, len(numbers))
@@ -180,7 +170,7 @@ def _items(parts: Sequence[NestPart], spacing_mm: float) -> tuple[list[Item], Sh
             outlines.append(part.polygon)
         sides = (False, True) if part.flip else (False,)
         turns = tuple((side, float(angle) % 360.0) for side in sides for angle in part.angles_deg)
-        items += [Item(p, c, shape, turns, part.lean_deg) for c in range(part.quantity)]
+        items += [Item(p, c, shape, turns, part.lean_deg, turns) for c in range(part.quantity)]
     return items, Shapes(outlines, spacing_mm / 2.0)
 
 
@@ -211,38 +201,9 @@ def _with_fitting_turns(
         turns[item.part] = None
         for lean in leans:
             tried = tuple((side, (angle + lean) % 360.0) for side, angle in item.turns)
-            trial = Item(item.part, 0, item.shape, tried, 0.0)
+            trial = replace(item, tries=tried)
             if any(lay(Sheet(k, 0, (), k.empty.copy()), 0, trial, shapes) for k in kinds):
-                turns[item.part] = tried if lean == 0.0 else item.turns + tried
+                turns[item.part] = tried
                 break
-    _refuse([_too_large(parts[p], stock, margin_mm) for p, t in turns.items() if t is None])
-    return [
-        Item(i.part, i.copy, i.shape, turns[i.part] or i.turns, i.lean_deg) for i in items
-    ]
-
-
-def _too_large(part: NestPart, stock: Sequence[NestStock], margin_mm: float) -> Problem:
-    x0, y0, x1, y1 = part.polygon.bounds
-    largest = max(stock, key=lambda s: s.outline.area)
-    a, b, c, d = largest.outline.bounds
-    return Problem(
-        part.id,
-        f"Its {x1 - x0:.1f} x {y1 - y0:.1f} mm fit on no sheet; the largest, {largest.id},"
-        f" has {c - a:.1f} x {d - b:.1f} mm with {margin_mm:g} mm of margin.",
-        "Divide the part, allow other angles, or give a larger sheet.",
-    )
-
-
-def _ran_out(filling: Filling, items: Sequence[Item], parts: Sequence[NestPart]) -> list[Problem]:
-    """One problem for each part that found no room because all sheets are full."""
-    short: dict[int, int] = {}
-    for index in filling.left:
-        short[items[index].part] = short.get(items[index].part, 0) + 1
-    return [
-        Problem(
-            parts[p].id,
-            f"No room is left for {n} of {parts[p].quantity} on the sheets at hand.",
-            "Add sheets.",
-        )
-        for p, n in sorted(short.items())
-    ]
+    _refuse([too_large(parts[p], stock, margin_mm) for p, t in turns.items() if t is None])
+    return [replace(i, tries=turns[i.part] or i.turns) for i in items]

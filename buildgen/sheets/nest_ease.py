@@ -22,6 +22,7 @@ SAMPLES = 45
 PATIENCE = 40
 FIRST_CUT = 0.004  # of all usable length in one step
 LAST_CUT_MM = 0.25
+SWAP_AFTER = 2  # cuts in a row that came to nothing
 CLOSED = -1.0
 
 
@@ -179,22 +180,26 @@ class Easing:
         c = self.crowd
         target = self._emptiest()
         cut = cut_most = FIRST_CUT * float(sum(r[2] - r[0] for r in c.rooms))
+        failures = 0
         while c.work[0] < work and target is not None:
             self._restore(self.best)
             end = self._reach(target)
+            if failures >= SWAP_AFTER:
+                self._swap_two()
             full = c.rooms[target, 2]
             c.rooms[target, 2] = self._next_end(target, end - cut)
             c.weight[:] = 1.0
             left = separate(c, SAMPLES, PATIENCE, work, self.deep, self.order)
             if left == 0.0 and self._sound():
                 self.best = self._state()
+                failures = 0
                 cut = min(cut * 1.5, cut_most)
                 if c.rooms[target, 2] <= c.rooms[target, 0]:
                     target = self._emptiest()
                 continue
             c.rooms[target, 2] = full
             cut = max(cut * 0.6, LAST_CUT_MM)
-            self._swap_two()
+            failures += 1
 
     def _emptiest(self) -> int | None:
         """The open counted sheet (or offcut, if there are no others) that is used least."""
@@ -217,7 +222,24 @@ class Easing:
         return end if end - c.rooms[s, 0] >= least else float(c.rooms[s, 0]) + CLOSED
 
     def _swap_two(self) -> None:
-        """Let two unlike copies change places in the best state, to leave a dead end."""
+        """Let two unlike copies of the larger half change places, to leave a dead end."""
+        c = self.crowd
+        n = len(self.items)
+        b = c.bounds[:n]
+        sizes = (b[:, 2] - b[:, 0]) * (b[:, 3] - b[:, 1])
+        large = sorted(range(n), key=lambda k: (-sizes[k], k))[: max(2, n // 2)]
+        i = large[self.dice.below(len(large))]
+        turn = c.sheet_turn[c.sheet]
+        unlike = [k for k in large if c.shape[k] != c.shape[i] and turn[k] == turn[i]]
+        if not unlike:
+            return
+        j = unlike[self.dice.below(len(unlike))]
+        move = 0.5 * (b[j, :2] + b[j, 2:] - b[i, :2] - b[i, 2:])
+        sheets = int(c.sheet[i]), int(c.sheet[j])
+        for k, sheet, sign in ((i, sheets[1], 1.0), (j, sheets[0], -1.0)):
+            c.pose[k, X : Y + 1] += sign * move
+            c.sheet[k] = sheet
+            place(c, k)
 
     def _sound(self) -> bool:
         """Whether the layouts pass the check with true outlines."""

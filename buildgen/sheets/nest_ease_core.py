@@ -79,7 +79,8 @@ def random(dice: Any) -> float:
     z = (z ^ (z >> np.uint64(30))) * np.uint64(0xBF58476D1CE4E5B9)
     z = (z ^ (z >> np.uint64(27))) * np.uint64(0x94D049BB133111EB)
     z = z ^ (z >> np.uint64(31))
-    return float(z >> np.uint64(11)) / 9007199254740992.0
+    value: float = (z >> np.uint64(11)) / 9007199254740992.0
+    return value
 
 
 @compiled_inline
@@ -95,7 +96,8 @@ def _distance(fields: Fields, k: int, x: float, y: float) -> float:
     q = fields.values
     near = (1.0 - a) * ((1.0 - b) * q[n] + b * q[n + 1])
     far = a * ((1.0 - b) * q[n + ny] + b * q[n + ny + 1])
-    return near + far + (abs(u - cu) + abs(v - cv)) * step
+    distance: float = near + far + (abs(u - cu) + abs(v - cv)) * step
+    return distance
 
 
 @compiled_inline
@@ -185,7 +187,7 @@ def _pair(c: Crowd, a: int, slot: int, j: int, enough: float) -> float:
 @compiled_inline
 def _edge(c: Crowd, a: int, slot: int, sheet: int) -> float:
     """How far outline a at a slot reaches beyond the room of a sheet."""
-    beyond = (
+    beyond: float = (
         max(0.0, c.rooms[sheet, 0] - c.bounds[slot, 0])
         + max(0.0, c.bounds[slot, 2] - c.rooms[sheet, 2])
         + max(0.0, c.rooms[sheet, 1] - c.bounds[slot, 1])
@@ -208,7 +210,7 @@ def _edge(c: Crowd, a: int, slot: int, sheet: int) -> float:
 def _harm(c: Crowd, i: int, slot: int, sheet: int, bound: float) -> float:
     """Weighted depths of copy i as it lies in a slot; once above ``bound`` it may stop short."""
     a = c.shape[i]
-    total = c.weight[i, i] * _edge(c, a, slot, sheet)
+    total: float = c.weight[i, i] * _edge(c, a, slot, sheet)
     for j in range(c.shape.shape[0]):
         if total >= bound:
             break
@@ -267,7 +269,8 @@ def _anywhere(c: Crowd, i: int) -> int:
     c.pose[trial, Y] = 0.0
     _transform(c, c.shape[i], trial)
     x0, y0 = c.rooms[sheet, 0] - c.bounds[trial, 0], c.rooms[sheet, 1] - c.bounds[trial, 1]
-    wide, high = c.rooms[sheet, 2] - c.bounds[trial, 2] - x0, c.rooms[sheet, 3] - c.bounds[trial, 3] - y0
+    wide = c.rooms[sheet, 2] - c.bounds[trial, 2] - x0
+    high = c.rooms[sheet, 3] - c.bounds[trial, 3] - y0
     if wide < 0.0 or high < -EDGE_MM:
         return -1
     c.pose[trial, X] = x0 + random(c.dice) * wide
@@ -301,7 +304,8 @@ def _step_aside(c: Crowd, t: int, sheet: int, axis: int, step: float) -> None:
     before = c.pose[trial, LEAN]
     most = c.turns[turn, 2]
     # bounds are those of the trial before, near enough for a middle
-    x0, y0, x1, y1 = (c.bounds[trial, 0], c.bounds[trial, 1], c.bounds[trial, 2], c.bounds[trial, 3])
+    x0, y0 = c.bounds[trial, 0], c.bounds[trial, 1]
+    x1, y1 = c.bounds[trial, 2], c.bounds[trial, 3]
     lean = min(most, max(-most, before + 4.0 * step / (x1 - x0 + y1 - y0)))
     _turn(c, sheet, trial, turn, lean)
     mx, my = 0.5 * (x0 + x1), 0.5 * (y0 + y1)

@@ -13,13 +13,23 @@ from buildgen.sheets.nest_sheet import Key, Kind, Mask, Sheet, Spot, mask_of, po
 
 @dataclass(frozen=True)
 class Item:
-    """One copy of a part; ``shape`` numbers the distinct outlines."""
+    """One copy of a part.
+
+    Attributes:
+        part: number of the part.
+        copy: number among its copies.
+        shape: number of its outline among the distinct ones.
+        turns: whether turned over, and base angle in degrees.
+        lean_deg: how far each may be off, either way.
+        tries: turns to try on the grid; those of ``turns`` unless it only fits when leaning.
+    """
 
     part: int
     copy: int
     shape: int
     turns: tuple[tuple[bool, float], ...]
     lean_deg: float
+    tries: tuple[tuple[bool, float], ...]
 
 
 @dataclass
@@ -46,10 +56,10 @@ class Shapes:
 
     def keys(self, kind: Kind, item: Item) -> list[Key]:
         """The turns of an item on a kind of sheet, those that look alike only once."""
-        where = (id(kind), item.shape, item.turns)
+        where = (id(kind), item.shape, item.tries)
         if where not in self.turns:
             unlike: dict[bytes, Key] = {}
-            for flipped, angle in item.turns:
+            for flipped, angle in item.tries:
                 key = (item.shape, flipped, (angle - kind.turn_deg) % 360.0)
                 mask = self.mask(kind, key)
                 if mask.words.shape[0] <= kind.counts[0] and mask.ny <= kind.counts[1]:

@@ -143,8 +143,7 @@ def _inset(outline: Polygon, by_mm: float, plain: bool) -> Polygon:
         if min(x1 - x0, y1 - y0) <= 2.0 * by_mm:
             return Polygon()
         return box(x0 + by_mm, y0 + by_mm, x1 - by_mm, y1 - by_mm)
-    inset = outline.buffer(-by_mm, quad_segs=64)
-    return inset  # type: ignore[no-any-return]  # several pieces are as good as one here
+    return outline.buffer(-by_mm, quad_segs=64)  # several pieces are as good as one here
 
 
 def _empty(
