@@ -1,0 +1,1 @@
+"""Checks: dry fit, weights and balance, stability, flight, strength, electrical."""
