@@ -21,7 +21,9 @@ Lengths: TypeAlias = Annotated[tuple[Number, ...], Field(strict=False)]
 Pair: TypeAlias = Annotated[tuple[Number, Number], Field(strict=False)]
 Triple: TypeAlias = Annotated[tuple[Number, Number, Number], Field(strict=False)]
 Size: TypeAlias = Annotated[tuple[Length, Length, Length], Field(strict=False)]
-Name: TypeAlias = Annotated[str, Field(min_length=1, max_length=60, pattern=r"^[a-z0-9][a-z0-9-]*$")]
+Name: TypeAlias = Annotated[
+    str, Field(min_length=1, max_length=60, pattern=r"^[a-z0-9][a-z0-9-]*$")
+]
 
 
 class Table(BaseModel):
@@ -71,7 +73,7 @@ class LeadingEdge(Table):
         "square", description="A square stick stands on its edge and is sanded to the section."
     )
     size_mm: Length = 6.0
-    material: str = "balsa-stick"
+    material: str = "balsa"
 
 
 class TrailingEdge(Table):
@@ -79,7 +81,7 @@ class TrailingEdge(Table):
 
     kind: Literal["stock", "none"] = "stock"
     width_mm: Length = 20.0
-    material: str = "balsa-stick"
+    material: str = "balsa"
 
 
 class WiringHole(Table):
@@ -283,7 +285,9 @@ class Equipment(Table):
     """A thing on board: one that may slide along x balances the aircraft."""
 
     name: str = Field(min_length=1, max_length=40)
-    kind: Literal["battery", "controller", "receiver", "servo", "payload", "gear", "other"] = "other"
+    kind: Literal[
+        "battery", "controller", "receiver", "servo", "payload", "gear", "other"
+    ] = "other"
     mass_g: Mass
     sigma_g: Mass | None = Field(None, description="One standard deviation; 3 % of the mass.")
     size_mm: Size = (20.0, 20.0, 10.0)

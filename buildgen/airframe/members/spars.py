@@ -1,0 +1,265 @@
+"""Spars: round tubes and rods, and square strips in notches; joiners at dihedral breaks."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from shapely.geometry import Point
+
+from buildgen.airframe.bays import Bay
+from buildgen.airframe.blank import Bar, Blank, Cut, bar_cut
+from buildgen.airframe.shop import Shop
+from buildgen.airframe.surface import AFT, Panel, WingShape
+from buildgen.design.schema import Spar
+from buildgen.part import Joint, Part
+from buildgen.problems import DesignError, Problem
+from buildgen.solid import Array, Mirrored, Placed, Pose, Rod, Shape, Union, prism_between
+
+STEP = "Wing: ribs on the spars"
+BREAK = "Wing: panels joined"
+
+
+@dataclass(frozen=True, eq=False)
+class SparRun:
+    """A spar within one run of panels without a break, straight from a to b, starboard."""
+
+    shop: Shop
+    number: int
+    spar: Spar
+    run: tuple[Panel, ...]
+    a: Array
+    b: Array
+    through: bool
+    """It runs through to the other side in one piece."""
+    piece: int
+
+    @property
+    def key(self) -> str:
+        return f"wing.spar[{self.number}]"
+
+    @property
+    def round(self) -> bool:
+        return self.spar.kind != "strip"
+
+    @property
+    def letter(self) -> str:
+        return f"{self.number}{'abcdefgh'[self.piece]}"
+
+    @cached_property
+    def bar(self) -> Bar:
+        """As the ribs see it: they cut past its ends, so that it can be slid in."""
+        up = self.run[0].up
+        if self.round:
+            return Bar(self.a, self.b, AFT, up, radius_mm=(self.spar.outer_mm or 0.0) / 2)
+        return Bar(self.a, self.b, AFT, up, self._section)
+
+    @property
+    def _section(self) -> Array:
+        """Corners of a strip; a notch opens to the surface the strip lies under."""
+        w, h = (self.spar.width_mm or 0.0) / 2, (self.spar.height_mm or 0.0) / 2
+        out = 3 * h
+        high = out if self.spar.place == "top" else h
+        low = -out if self.spar.place == "bottom" else -h
+        return np.array([[-w, low], [w, low], [w, high], [-w, high]])
+
+    @property
+    def size(self) -> str:
+        """What to ask for at the counter."""
+        if self.spar.kind == "tube" and self.spar.inner_mm:
+            return f"{self.spar.outer_mm:g} x {self.spar.inner_mm:g} tube"
+        if self.round:
+            return f"{self.spar.outer_mm:g} rod"
+        return f"{self.spar.height_mm:g} x {self.spar.width_mm:g}"
+
+    def _shape(self, start: Array, end: Array) -> Shape:
+        if self.round:
+            pose = Pose.at(start, end - start, AFT)
+            radius = (self.spar.outer_mm or 0.0) / 2
+            return Placed(
+                Rod(radius, float(np.linalg.norm(end - start)), self.spar.inner_mm / 2), pose
+            )
+        w, h = (self.spar.width_mm or 0.0) / 2, (self.spar.height_mm or 0.0) / 2
+        corners = np.array([[-w, -h], [w, -h], [w, h], [-w, h]])
+        return prism_between(corners, start, end, self.run[0].up)
+
+    @cached_property
+    def parts(self) -> tuple[Part, ...]:
+        name = f"spar {self.number}, {self.spar.place}" if not self.round else f"spar {self.number}"
+        length = float(np.linalg.norm(self.b - self.a))
+        if self.through:
+            left = self.a * (1, -1, 1) if abs(self.a[1]) > 1e-6 else self.b * (1, -1, 1)
+            if abs(self.a[1]) < 1e-6 and abs(self.a[0] - self.b[0]) < 1e-6:
+                both = self._shape(left, self.b)
+                return (self._stick(f"S{self.letter}", name + ", in one piece", both, 2 * length),)
+        right = self._stick(
+            f"SR{self.letter}", name + ", right", self._shape(self.a, self.b), length
+        )
+        return right, right.mirrored(f"SL{self.letter}", name + ", left")
+
+    def _stick(self, id: str, name: str, shape: Shape, length: float) -> Part:
+        return self.shop.stick(
+            id, name, self.spar.material, self.size, shape, length, STEP, self.key
+        )
+
+    def cut(self, blank: Blank) -> Cut:
+        play = self.shop.slip_mm if self.round else self.shop.press_mm
+        return bar_cut(self.bar, blank, play)
+
+    def joint(self, blank: Blank) -> Joint | None:
+        if not (self.cut(blank).holes or self.cut(blank).circles):
+            return None
+        kind = "spar in hole" if self.round else "stick in notch"
+        way = self.bar.axis if self.round else self.run[0].up
+        return Joint(kind, self.parts[0].id, blank.id, (0.0, 0.6), tuple(float(v) for v in way))
+
+
+@dataclass(frozen=True, eq=False)
+class Joiner:
+    """A bent rod in the bores of two tubes that meet at a dihedral break, or at the root."""
+
+    shop: Shop
+    inner: SparRun | None
+    outer: SparRun
+
+    @cached_property
+    def parts(self) -> tuple[Part, ...]:
+        spar = self.outer.spar
+        radius = _wire_radius(self.shop, spar, self.outer.key)
+        reach = spar.joiner_mm
+        here = self.outer.a
+        out = here + reach * self.outer.bar.axis
+        back = out * (1, -1, 1) if self.inner is None else here - reach * self.inner.bar.axis
+        arm = _rod(here, out, radius)
+        other: Shape = Mirrored(arm, 1) if self.inner is None else _rod(here, back, radius)
+        bend = float(np.degrees(np.arccos(np.clip(
+            np.dot(_unit(here - back), _unit(out - here)), -1, 1))))
+        number = f"J{self.outer.letter}"
+        size = f"{2 * radius:g} rod"
+        key = self.outer.key
+        made = self.shop.stick(
+            number if self.inner is None else f"{number}R",
+            f"joiner of spar {self.outer.number}, bent {bend:.1f} degrees",
+            spar.joiner_material, size, Union((arm, other)), 2 * reach, BREAK, key,
+            ((reach, bend),),
+        )
+        if self.inner is None:
+            return (made,)
+        return made, made.mirrored(f"{number}L", made.name)
+
+    def cut(self, blank: Blank) -> Cut:
+        return Cut()
+
+    def joint(self, blank: Blank) -> Joint | None:
+        return None
+
+
+def _unit(v: Array) -> Array:
+    return np.asarray(v / np.linalg.norm(v))
+
+
+def _rod(start: Array, end: Array, radius: float) -> Shape:
+    pose = Pose.at(start, end - start, AFT)
+    return Placed(Rod(radius, float(np.linalg.norm(end - start))), pose)
+
+
+def _wire_radius(shop: Shop, spar: Spar, key: str) -> float:
+    """The thickest stock rod that slides into the bore."""
+    room = spar.inner_mm - 2 * shop.slip_mm + 0.1
+    stock = shop.material(spar.joiner_material, f"{key}.joiner_material", "rod").diameters_mm
+    fits = [d for d in stock if d <= room]
+    if not fits:
+        raise DesignError(
+            Problem(f"{key}.inner_mm", f"No {spar.joiner_material} goes into a bore of"
+                    f" {spar.inner_mm:g} mm.", "Take a wider tube, or end the spar at the break.")
+        )
+    return max(fits) / 2
+
+
+def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[SparRun | Joiner]:
+    """Every spar, split at dihedral breaks, with the joiners between its pieces."""
+    for number, spar in enumerate(shop.definition.wing.spar, start=1):
+        _check(spar, number, shop)
+        pieces = [
+            piece
+            for i, run in enumerate(wing.runs)
+            if (piece := _piece(shop, wing, spar, number, run, i)) is not None
+        ]
+        yield from pieces
+        if spar.kind == "tube" and spar.inner_mm and spar.joiner_mm:
+            if pieces and spar.from_mm == 0 and not pieces[0].through:
+                yield Joiner(shop, None, pieces[0])
+            for inner, outer in zip(pieces, pieces[1:], strict=False):
+                yield Joiner(shop, inner, outer)
+
+
+def _check(spar: Spar, number: int, shop: Shop) -> None:
+    key = f"wing.spar[{number}]"
+    shop.material(spar.material, f"{key}.material")
+    wanted = ("outer_mm",) if spar.kind != "strip" else ("width_mm", "height_mm")
+    missing = [
+        Problem(f"{key}.{name}", "is missing.", f"A {spar.kind} needs {' and '.join(wanted)}.")
+        for name in wanted
+        if getattr(spar, name) is None
+    ]
+    if spar.kind != "strip" and spar.outer_mm and spar.inner_mm >= spar.outer_mm:
+        missing.append(
+            Problem(f"{key}.inner_mm", f"{spar.inner_mm:g} is not below the outside"
+                    f" diameter {spar.outer_mm:g}.", "Give the bore of the tube.")
+        )
+    if missing:
+        raise DesignError(*missing)
+
+
+def _piece(
+    shop: Shop, wing: WingShape, spar: Spar, number: int, run: tuple[Panel, ...], index: int
+) -> SparRun | None:
+    start, end = run[0].start_mm, run[-1].start_mm + run[-1].length_mm
+    low, high = max(start, spar.from_mm), min(end, spar.to_mm or wing.half_span_mm)
+    if high - low < 1.0:
+        return None
+    a, b = (_place(wing, spar, s, run) for s in (low, high))
+    piece = SparRun(
+        shop, number, spar, run, a, b, index == 0 and low == 0 and wing.flat_centre, index
+    )
+    _stays_inside(piece, wing, low, high)
+    return piece
+
+
+def _place(wing: WingShape, spar: Spar, span: float, run: tuple[Panel, ...]) -> Array:
+    """The spar's axis at a distance along the span."""
+    share = span / wing.half_span_mm
+    tip = spar.at_chord if spar.at_tip_chord is None else spar.at_tip_chord
+    fraction = spar.at_chord * (1 - share) + tip * share
+    panel = next(p for p in run if span <= p.start_mm + p.length_mm + 1e-9)
+    point = panel.point(span - panel.start_mm, fraction, spar.place)
+    if spar.place == "middle":
+        return point
+    depth = (spar.height_mm or spar.outer_mm or 0.0) / 2
+    if spar.kind != "strip":
+        depth += 2.0
+    return point - depth * panel.up * (1 if spar.place == "top" else -1)
+
+
+def _stays_inside(piece: SparRun, wing: WingShape, low: float, high: float) -> None:
+    """Depth check at stations along the spar: it must lie in the section everywhere."""
+    spar = piece.spar
+    size = spar.outer_mm if piece.round else spar.height_mm
+    for share in np.linspace(0.0, 1.0, 9):
+        span = low + float(share) * (high - low)
+        panel = next(p for p in piece.run if span <= p.start_mm + p.length_mm + 1e-9)
+        pose = panel.plane(span - panel.start_mm)
+        outline = panel.outline(pose)
+        spot = pose.local(piece.a + share * (piece.b - piece.a))[:2]
+        ring = Point(*spot).buffer((size or 0.0) / 2) if piece.round else Point(*spot)
+        if not outline.contains(ring):
+            raise DesignError(
+                Problem(
+                    f"{piece.key}.at_chord",
+                    f"At {span:.0f} mm from the centre the {spar.kind} of {size:g} mm"
+                    f" does not lie inside the section.",
+                    "Move it towards the thickest point, make it thinner or end it with to_mm.",
+                )
+            )

@@ -1,0 +1,198 @@
+"""Ribs: blanks cut out of the wing's shape, then cut by every member that passes."""
+
+from __future__ import annotations
+
+from collections.abc import Iterable
+from dataclasses import dataclass
+
+import numpy as np
+from shapely.geometry import Polygon
+
+from buildgen.airframe.bays import Bay
+from buildgen.airframe.blank import Blank, Cut, apply, lightening, parts_of
+from buildgen.airframe.members import Member
+from buildgen.airframe.shop import Shop
+from buildgen.airframe.surface import Panel, WingShape
+from buildgen.part import Joint, Part
+from buildgen.problems import DesignError, Problem
+from buildgen.solid import Array, Pose
+
+STEP = "Wing: ribs on the spars"
+
+
+@dataclass(frozen=True, eq=False)
+class Place:
+    """Where a rib stands: its outer face along a panel, its plane, what it is for."""
+
+    panel: Panel
+    face_mm: float
+    normal: Array
+    material: str
+    thickness_mm: float
+    why: str
+    bay: Bay | None = None
+    single: bool = False
+    """On the centre line, shared by both halves."""
+
+
+def places(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> list[Place]:
+    """Every rib of the starboard half from the root out."""
+    found: list[Place] = []
+    for panel in wing.panels:
+        found += _panel_places(shop, wing, panel, [b for b in bays if b.panel is panel])
+    return found
+
+
+def _panel_places(shop: Shop, wing: WingShape, panel: Panel, bays: list[Bay]) -> list[Place]:
+    ribs = shop.definition.wing.ribs
+    plain = shop.thickness(ribs.material, ribs.thickness_mm)
+    end_wood = ribs.root_material or ribs.material
+    end = shop.thickness(end_wood, ribs.root_thickness_mm or ribs.thickness_mm)
+    found: list[Place] = []
+    centre = panel.index == 0 and wing.flat_centre
+    break_in = panel.index > 0 and _breaks(wing, panel.index - 1)
+    if centre:
+        found.append(Place(panel, end / 2, panel.along, end_wood, end, "centre rib", single=True))
+    elif panel.index == 0 or break_in:
+        found.append(Place(panel, end, panel.inner_normal, end_wood, end,
+                           "root rib" if panel.index == 0 else "rib at the break"))
+    for bay in bays:
+        power = shop.definition.power
+        assert power is not None
+        for face, side in ((bay.s_mm - bay.half_mm, "inboard"), (bay.outer_face_mm, "outboard")):
+            found.append(Place(panel, face, panel.along, power.mount.rib_material, bay.rib_mm,
+                               f"mount rib, motor {bay.index} {side}", bay))
+    last = panel.index == len(wing.panels) - 1
+    at_break = not last and _breaks(wing, panel.index)
+    wood, thick = (end_wood, end) if at_break else (ribs.material, plain)
+    why = "tip rib" if last else ("rib at the break" if at_break else "rib between panels")
+    found.append(Place(panel, panel.length_mm, panel.outer_normal, wood, thick, why))
+    found.sort(key=lambda p: p.face_mm)
+    return _filled(shop, panel, found, bays, plain)
+
+
+def _breaks(wing: WingShape, index: int) -> bool:
+    a, b = wing.panels[index], wing.panels[index + 1]
+    return abs(a.dihedral_deg - b.dihedral_deg) > 1e-9
+
+
+def _filled(
+    shop: Shop, panel: Panel, fixed: list[Place], bays: list[Bay], plain: float
+) -> list[Place]:
+    """Plain ribs between the fixed ones, at most the wanted spacing apart."""
+    given = shop.definition.wing.panel[panel.index]
+    spacing = given.rib_spacing_mm or shop.definition.wing.rib_spacing_mm
+    if given.rib_count:
+        spacing = panel.length_mm / given.rib_count
+    marks = [p.face_mm - p.thickness_mm / 2 for p in fixed]
+    if marks[0] > spacing / 2:
+        marks.insert(0, 0.0)
+    found = list(fixed)
+    for low, high in zip(marks, marks[1:], strict=False):
+        if any(abs((low + high) / 2 - b.s_mm) < 1.0 for b in bays):
+            continue
+        gaps = max(1, int(np.ceil((high - low) / spacing - 0.05)))
+        for k in range(1, gaps):
+            face = low + k * (high - low) / gaps + plain / 2
+            wood = shop.definition.wing.ribs.material
+            found.append(Place(panel, face, panel.along, wood, plain, "rib"))
+    return sorted(found, key=lambda p: p.face_mm)
+
+
+def make_ribs(
+    shop: Shop, wing: WingShape, bays: tuple[Bay, ...], members: tuple[Member, ...],
+    extra: dict[int, Iterable[Cut]] | None = None,
+) -> tuple[list[Part], list[Joint]]:
+    """Every rib of both halves with its joints.
+
+    Args:
+        extra: cuts and tabs for the ribs of a bay, by its index (tongues for the mounts).
+    """
+    parts: list[Part] = []
+    joints: list[Joint] = []
+    number = 0
+    for place in places(shop, wing, bays):
+        if not place.single:
+            number += 1
+        id_right = "R0" if place.single else f"R{number}R"
+        blank = _blank(shop, place, id_right)
+        more = (extra or {}).get(place.bay.index, ()) if place.bay else ()
+        part = _cut_rib(shop, place, blank, members, tuple(more))
+        parts.append(part)
+        joints += [j for m in members if (j := m.joint(blank)) is not None]
+        if not place.single:
+            parts.append(part.mirrored(f"R{number}L", part.name.replace("right", "left")))
+    return parts, joints
+
+
+def _blank(shop: Shop, place: Place, id: str) -> Blank:
+    """Outline at both faces; the smaller or the larger as the definition asks."""
+    pose = place.panel.plane(place.face_mm, place.normal)
+    inner = Pose(pose.rotation, pose.origin + pose.rotation[:, 2] * place.thickness_mm)
+    faces = [place.panel.outline(pose)]
+    shifted = Polygon(pose.local(place.panel.ring(inner))[:, :2])
+    faces.append(faces[0] if place.single else shifted)
+    if shop.definition.wing.ribs.edges == "smaller":
+        merged = faces[0].intersection(faces[1])
+    else:
+        merged = faces[0].union(faces[1])
+    outline = max(parts_of(merged), key=lambda p: p.area)
+    return Blank(id, pose, place.thickness_mm, outline)
+
+
+def _cut_rib(
+    shop: Shop, place: Place, blank: Blank, members: tuple[Member, ...], more: tuple[Cut, ...]
+) -> Part:
+    cuts = [m.cut(blank) for m in members] + list(more)
+    outline, circles, marks = apply(blank.outline, cuts)
+    _still_whole(place, outline, blank)
+    ribs = shop.definition.wing.ribs
+    if ribs.lightening.use:
+        line = _mean_line(blank.outline)
+        web = ribs.lightening.min_web_mm or shop.web_mm(
+            place.material, place.thickness_mm, "wing.ribs.material"
+        )
+        circles += lightening(outline, circles, line, web, ribs.lightening.min_diameter_mm)
+    side = "" if place.single else ", right"
+    nominal = _nominal(shop, place)
+    key = "power.mount" if place.bay else place.panel.key
+    return shop.plate(
+        blank.id, f"{place.why}{side}", place.material, nominal, outline, blank.pose, STEP, key,
+        circles=circles, grain_deg=0.0, marks=marks,
+    )
+
+
+def _nominal(shop: Shop, place: Place) -> float:
+    """The thickness as the definition names it, from the measured one."""
+    ribs, power = shop.definition.wing.ribs, shop.definition.power
+    if place.bay and power:
+        return power.mount.rib_thickness_mm
+    if place.why in ("centre rib", "root rib", "rib at the break"):
+        return ribs.root_thickness_mm or ribs.thickness_mm
+    return ribs.thickness_mm
+
+
+def _mean_line(outline: Polygon, count: int = 160) -> Array:
+    """Points half way between the surfaces, nose to tail."""
+    x0, y0, x1, y1 = outline.bounds
+    ring = np.asarray(outline.exterior.coords)[:-1]
+    nose, tail = int(ring[:, 0].argmin()), int(ring[:, 0].argmax())
+    ring = np.roll(ring, -nose, axis=0)
+    tail = (tail - nose) % len(ring)
+    one, two = ring[: tail + 1], np.vstack([ring[tail:], ring[:1]])[::-1]
+    xs = np.linspace(x0 + 1, x1 - 1, count)
+    ys = [np.interp(xs, side[:, 0], side[:, 1]) for side in (one, two)]
+    return np.column_stack([xs, (ys[0] + ys[1]) / 2])
+
+
+def _still_whole(place: Place, outline: Polygon, blank: Blank) -> None:
+    """A rib that its members cut to pieces is a fault of the definition."""
+    if outline.is_empty or outline.area < 0.5 * blank.outline.area:
+        raise DesignError(
+            Problem(
+                place.panel.key,
+                f"The {place.why} {place.face_mm:.0f} mm along this panel is cut in two:"
+                f" {outline.area:.0f} of {blank.outline.area:.0f} mm2 are left in one piece.",
+                "Make the spars or holes smaller, or move them apart.",
+            )
+        )
