@@ -10,6 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 from buildgen.problems import DesignError, Problem
 
 Floats = NDArray[np.float64]
+Whole = NDArray[np.intp]
 
 
 def above_zero(**values: float) -> None:
