@@ -15,7 +15,7 @@ from typing import Any, NamedTuple
 import numpy as np
 
 from buildgen.sheets.nest_field import Fields
-from buildgen.sheets.nest_jit import compiled, compiled_inline
+from buildgen.sheets.nest_jit import compiled, compiled_inline, compiled_inside
 
 X, Y, COS, SIN, SIDE, TURN, LEAN = 0, 1, 2, 3, 4, 5, 6  # columns of a pose
 POSE = 7
@@ -206,7 +206,7 @@ def _edge(c: Crowd, a: int, slot: int, sheet: int) -> float:
     return beyond + deep
 
 
-@compiled
+@compiled_inside
 def _harm(c: Crowd, i: int, slot: int, sheet: int, bound: float) -> float:
     """Weighted depths of copy i as it lies in a slot; once above ``bound`` it may stop short."""
     a = c.shape[i]
@@ -220,7 +220,7 @@ def _harm(c: Crowd, i: int, slot: int, sheet: int, bound: float) -> float:
     return total
 
 
-@compiled
+@compiled_inside
 def _try(c: Crowd, i: int, sheet: int, bound: float) -> float:
     """Harm of copy i if it lay at the trial pose."""
     trial = c.shape.shape[0]
@@ -228,7 +228,7 @@ def _try(c: Crowd, i: int, sheet: int, bound: float) -> float:
     return _harm(c, i, trial, sheet, bound)
 
 
-@compiled
+@compiled_inside
 def _turn(c: Crowd, sheet: int, slot: int, turn: int, lean: float) -> None:
     """Write turn, lean and side of a pose."""
     angle = c.turns[turn, 1] + lean - c.sheet_turn[sheet]
@@ -239,7 +239,7 @@ def _turn(c: Crowd, sheet: int, slot: int, turn: int, lean: float) -> None:
     c.pose[slot, LEAN] = lean
 
 
-@compiled
+@compiled_inside
 def _some_sheet(c: Crowd) -> int:
     """A random open sheet, long rooms more often."""
     length = 0.0
@@ -257,7 +257,7 @@ def _some_sheet(c: Crowd) -> int:
     return last
 
 
-@compiled
+@compiled_inside
 def _anywhere(c: Crowd, i: int) -> int:
     """Set the trial to a random pose within a random sheet; the sheet, or -1."""
     trial = c.shape.shape[0]
@@ -278,7 +278,7 @@ def _anywhere(c: Crowd, i: int) -> int:
     return sheet
 
 
-@compiled
+@compiled_inside
 def _nearby(c: Crowd, i: int, size: float) -> None:
     """Set the trial to a random move of up to ``size`` from where copy i lies."""
     trial = c.shape.shape[0]
@@ -288,7 +288,7 @@ def _nearby(c: Crowd, i: int, size: float) -> None:
     c.pose[trial, Y] += (2.0 * random(c.dice) - 1.0) * size
 
 
-@compiled
+@compiled_inside
 def _step_aside(c: Crowd, t: int, sheet: int, axis: int, step: float) -> None:
     """Set the trial one step from start t: along x, y, a diagonal, or in lean about its middle."""
     trial = c.shape.shape[0]
@@ -315,7 +315,7 @@ def _step_aside(c: Crowd, t: int, sheet: int, axis: int, step: float) -> None:
     c.pose[trial, Y] = my + sin * rx + cos * ry
 
 
-@compiled
+@compiled_inside
 def _refine(c: Crowd, i: int, t: int, step: float, least: float) -> None:
     """Walk start t downhill; steps grow after success and halve after failure."""
     trial = c.shape.shape[0]
@@ -338,7 +338,7 @@ def _refine(c: Crowd, i: int, t: int, step: float, least: float) -> None:
         step *= 1.1 if better else 0.5
 
 
-@compiled
+@compiled_inside
 def _keep(c: Crowd, harm: float, sheet: int) -> None:
     """Insert the trial among the best starts."""
     trial = c.shape.shape[0]
@@ -355,7 +355,7 @@ def _keep(c: Crowd, harm: float, sheet: int) -> None:
         c.tops[t, 2 + k] = c.pose[trial, k]
 
 
-@compiled
+@compiled_inside
 def move(c: Crowd, i: int, samples: int) -> None:
     """Look for the place of least harm for copy i and put it there."""
     size = min(c.bounds[i, 2] - c.bounds[i, 0], c.bounds[i, 3] - c.bounds[i, 1])
@@ -403,7 +403,7 @@ def depths(c: Crowd, deep: Any) -> float:
     return total
 
 
-@compiled
+@compiled_inside
 def _reweigh(c: Crowd, deep: Any) -> None:
     """Pairs that press weigh more, the deepest most; the others slowly less."""
     n = c.shape.shape[0]
@@ -419,7 +419,7 @@ def _reweigh(c: Crowd, deep: Any) -> None:
             c.weight[j, i] = w
 
 
-@compiled
+@compiled_inside
 def _shuffle(c: Crowd, order: Any) -> None:
     """Put the copies into a random order."""
     for k in range(order.shape[0] - 1, 0, -1):

@@ -19,13 +19,20 @@ def compiled(function: Fn) -> Fn:
     return _compiled(function, False)
 
 
+def compiled_inside(function: Fn) -> Fn:
+    """The same for functions that only compiled ones call: no way in from Python is made."""
+    return _compiled(function, False, inside=True)
+
+
 def compiled_inline(function: Fn) -> Fn:
     """The same, but set into every caller: for small functions called very often."""
-    return _compiled(function, True)
+    return _compiled(function, True, inside=True)
 
 
-def _compiled(function: Fn, inline: bool) -> Fn:
-    options = {"_nrt": False, "forceinline": inline}
+def _compiled(function: Fn, inline: bool, inside: bool = False) -> Fn:
+    options = {"_nrt": False, "forceinline": inline, "error_model": "numpy"}
+    if inside:
+        options |= {"no_cpython_wrapper": True, "no_cfunc_wrapper": True}
     try:
         return cast(Fn, numba.njit(cache=True, **options)(function))
     except RuntimeError:  # no place to keep the machine code: compile in every run
