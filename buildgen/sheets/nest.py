@@ -42,7 +42,7 @@ class _Bounds:
 
     Attributes:
         tries: changed orders when filling sheets.
-        work_least: points held against outlines when easing; about 100 million take a second.
+        work_least: points held against outlines when easing; about 120 million take a second.
         work_each: the same for each copy; the larger of the two sums counts.
     """
 
@@ -52,8 +52,8 @@ class _Bounds:
 
 
 EFFORTS = {
-    "quick": _Bounds(2, 20_000_000, 800_000),
-    "normal": _Bounds(20, 300_000_000, 14_000_000),
+    "quick": _Bounds(2, 20_000_000, 1_000_000),
+    "normal": _Bounds(20, 300_000_000, 20_000_000),
     "high": _Bounds(100, 1_500_000_000, 80_000_000),
 }
 
@@ -100,15 +100,8 @@ def nest(
     items, shapes = _items(parts, spacing_mm)
     begun = _begun(kinds, fixed)
     items = _with_fitting_turns(items, shapes, kinds, parts, stock, margin_mm)
-    job = _Job(parts, items, shapes, fixed, spacing_mm, margin_mm)
-    if not items:
-        return job.result(Filling([], []), begun)
-    bounds = EFFORTS[effort]
-    filling = best_filling(items, shapes, kinds, begun, bounds.tries)
-    _refuse(ran_out(filling.left, items, parts))
-    easing = Easing(filling, items, shapes, kinds, spacing_mm, margin_mm)
-    easing.shorten(max(bounds.work_least, bounds.work_each * len(items)))
-    return job.result(min(filling, easing.filling(), key=lambda f: score(f, kinds)), begun)
+    job = _Job(parts, items, shapes, fixed, spacing_mm, margin_mm, EFFORTS[effort])
+    return job.result(job.filled(kinds) if items else Filling([], []), begun)
 
 
 @dataclass(frozen=True)
@@ -119,22 +112,56 @@ class _Job:
     fixed: Sequence[NestFixed]
     spacing_mm: float
     margin_mm: float
+    bounds: _Bounds
+
+    def filled(self, kinds: Sequence[Kind]) -> Filling:
+        """Sheets filled and shortened.
+
+        Raises:
+            DesignError: the stock runs out.
+        """
+        first = self._laid(kinds)
+        if not first.left:
+            return self._eased(first, kinds)
+        largest = max(kinds, key=lambda k: k.outline.area)
+        limit = largest.stock.quantity or 0
+        lent = [
+            replace(k, stock=replace(k.stock, quantity=limit + 1)) if k is largest else k
+            for k in kinds
+        ]
+        second = self._laid(lent)  # with one sheet more than there is, to be emptied again
+        if not second.left:
+            eased = self._eased(second, lent)
+            begun = [s for s in _begun(kinds, self.fixed) if s.kind is largest]
+            used = [s for s in eased.used() if s.kind.stock.id == largest.stock.id]
+            if all(n < limit for n in _numbers(used, begun)):
+                return eased
+        raise DesignError(*ran_out(first.left, self.items, self.parts))
+
+    def _laid(self, kinds: Sequence[Kind]) -> Filling:
+        begun = _begun(kinds, self.fixed)
+        return best_filling(self.items, self.shapes, kinds, begun, self.bounds.tries)
+
+    def _eased(self, filling: Filling, kinds: Sequence[Kind]) -> Filling:
+        easing = Easing(filling, self.items, self.shapes, kinds, self.spacing_mm, self.margin_mm)
+        easing.shorten(max(self.bounds.work_least, self.bounds.work_each * len(self.items)))
+        return min(filling, easing.filling(), key=lambda f: score(f, kinds))
 
     def result(self, filling: Filling, begun: Sequence[Sheet]) -> NestResult:
         """Layouts of the sheets, each checked; sheets with old parts only are told as well."""
         used = filling.used()
-        idle = [
-            s for s in begun if not any(u.kind is s.kind and u.number == s.number for u in used)
-        ]
+        idle = [s for s in begun if not any(_same(s, u) for u in used)]
         equivalent = len(used) - 1 + min(s.share for s in used) if used else 0.0
-        return NestResult(tuple(self._layout(s) for s in [*used, *idle]), equivalent)
+        numbers = _numbers(used, begun)
+        layouts = [self._layout(s, n) for s, n in zip(used, numbers, strict=True)]
+        return NestResult((*layouts, *(self._layout(s, s.number) for s in idle)), equivalent)
 
-    def _layout(self, sheet: Sheet) -> NestLayout:
+    def _layout(self, sheet: Sheet, number: int) -> NestLayout:
         placements = []
         for index, spot in sorted(zip(sheet.items, sheet.spots, strict=True)):
             item = self.items[index]
             placements.append(sheet.kind.to_sheet(spot, self.parts[item.part].id, item.copy))
-        return self._checked(sheet.kind.stock, sheet.number, placements, sheet.fixed)
+        return self._checked(sheet.kind.stock, number, placements, sheet.fixed)
 
     def _checked(
         self,
@@ -157,6 +184,26 @@ class _Job:
 def _refuse(problems: Sequence[Problem]) -> None:
     if problems:
         raise DesignError(*problems)
+
+
+def _same(a: Sheet, b: Sheet) -> bool:
+    """Whether two fillings of a sheet are of one that was begun before."""
+    return bool(b.fixed) and a.kind.stock.id == b.kind.stock.id and a.number == b.number
+
+
+def _numbers(used: Sequence[Sheet], begun: Sequence[Sheet]) -> list[int]:
+    """Numbers of sheets within their kind: begun ones keep theirs, fresh ones follow in order."""
+    following = {s.kind.stock.id: 0 for s in used}
+    for sheet in begun:
+        kind = sheet.kind.stock.id
+        following[kind] = max(following.get(kind, 0), sheet.number + 1)
+    numbers = []
+    for sheet in used:
+        kind = sheet.kind.stock.id
+        fresh = not sheet.fixed
+        numbers.append(following[kind] if fresh else sheet.number)
+        following[kind] += 1 if fresh else 0
+    return numbers
 
 
 def _items(parts: Sequence[NestPart], spacing_mm: float) -> tuple[list[Item], Shapes]:

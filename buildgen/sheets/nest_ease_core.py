@@ -184,6 +184,31 @@ def _pair(c: Crowd, a: int, slot: int, j: int, enough: float) -> float:
     return _press(c, a, slot, rb + cb, pb + cb, nb, deep, enough)
 
 
+@compiled_inside
+def _beyond_room(c: Crowd, a: int, slot: int, k: int) -> float:
+    """How deep outline a at a slot reaches out of room k, or a corner of the room into it."""
+    row, first = c.fields.first[a], c.point_first[slot]
+    n = c.fields.first[a + 1] - row
+    deep = 0.0
+    for p in range(n):
+        out = _distance(c.fields, k, c.points[first + p, 0], c.points[first + p, 1])
+        deep = max(deep, c.fields.points[row + p, 2] + out)
+    corners = c.fields.first[k] + c.fields.circles[k]
+    end = c.fields.first[k + 1]
+    c.work[0] += n + end - corners
+    for p in range(corners, end):
+        x, y = c.fields.points[p, 0], c.fields.points[p, 1]
+        if (
+            x > c.bounds[slot, 0] and x < c.bounds[slot, 2]
+            and y > c.bounds[slot, 1] and y < c.bounds[slot, 3]
+        ):
+            dx, dy = x - c.pose[slot, X], y - c.pose[slot, Y]
+            lx = (c.pose[slot, COS] * dx + c.pose[slot, SIN] * dy) * c.pose[slot, SIDE]
+            ly = c.pose[slot, COS] * dy - c.pose[slot, SIN] * dx
+            deep = max(deep, -_distance(c.fields, a, lx, ly))
+    return deep
+
+
 @compiled_inline
 def _edge(c: Crowd, a: int, slot: int, sheet: int) -> float:
     """How far outline a at a slot reaches beyond the room of a sheet."""
@@ -196,14 +221,7 @@ def _edge(c: Crowd, a: int, slot: int, sheet: int) -> float:
     k = c.room_field[sheet]
     if k < 0:
         return beyond if beyond > EDGE_MM else 0.0
-    row, first = c.fields.first[a], c.point_first[slot]
-    n = c.fields.first[a + 1] - row
-    c.work[0] += n
-    deep = 0.0
-    for p in range(n):
-        out = _distance(c.fields, k, c.points[first + p, 0], c.points[first + p, 1])
-        deep = max(deep, c.fields.points[row + p, 2] + out)
-    return beyond + deep
+    return beyond + _beyond_room(c, a, slot, k)
 
 
 @compiled_inside

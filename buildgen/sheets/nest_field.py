@@ -14,7 +14,8 @@ from buildgen.sheets.nest_jit import compiled
 from buildgen.sheets.nest_raster import edges_of, rings_of
 
 Floats = npt.NDArray[np.float64]
-NODES = 40_000  # of one field at most
+NODES = 40_000  # of one field at most,
+ROOM_NODES = 160_000  # of the room of a sheet
 STEP_MM = 0.5  # between nodes, unless that takes too many
 REACH_MM = 3.0  # of a field beyond spacing
 POINT_GAP_MM = 6.0  # between points along straight edges
@@ -115,7 +116,7 @@ def fields_of(
         pieces = list(shape.geoms) if isinstance(shape, MultiPolygon) else [shape]
         x0, y0, x1, y1 = shape.bounds
         width, height = x1 - x0 + 2 * pad, y1 - y0 + 2 * pad
-        step = max(STEP_MM, math.sqrt(width * height / NODES))
+        step = max(STEP_MM, math.sqrt(width * height / (NODES if ways else ROOM_NODES)))
         nx, ny = math.ceil(width / step) + 2, math.ceil(height / step) + 2
         edges = np.vstack([edges_of(p) for p in pieces])
         found = np.empty((nx, ny), np.float32)

@@ -125,6 +125,17 @@ def test_stock_that_runs_out_is_told():
         )
 
 
+def test_limited_stock_is_packed_tighter_before_it_is_called_too_little():
+    """Wedges that only fit the single sheet head to tail, at slopes no grid of cells meets."""
+    parts = [
+        NestPart(f"w{n}", Polygon([(0, 0), (100 + n, 0), (0, 40 + 0.2 * n)]), 2) for n in range(5)
+    ]
+    stock = [NestStock("s", 305, 91, quantity=1)]
+    result = nest(parts, stock, spacing_mm=1.0, margin_mm=2.0)
+    assert [(lay.stock_id, lay.sheet) for lay in result.layouts] == [("s", 0)]
+    assert_sound(parts, result, 1.0, 2.0)
+
+
 def test_a_small_part_lies_inside_the_opening_of_a_large_one():
     """290 x 90 mm of ring take the sheet; its opening is the only place left."""
     ring = Polygon(box(0, 0, 290, 90).exterior, [box(20, 20, 270, 70).exterior])
