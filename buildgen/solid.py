@@ -22,6 +22,7 @@ from shapely.geometry.polygon import orient
 
 Array: TypeAlias = NDArray[np.float64]
 Vector: TypeAlias = tuple[float, float, float]
+Direction: TypeAlias = Sequence[float] | NDArray[np.float64]
 Circle: TypeAlias = tuple[float, float, float]
 """x_mm, y_mm, radius_mm"""
 
@@ -40,7 +41,7 @@ class Pose:
     origin: Array = field(default_factory=lambda: np.zeros(3))
 
     @classmethod
-    def at(cls, origin: Sequence[float], x: Sequence[float], y: Sequence[float]) -> Pose:
+    def at(cls, origin: Direction, x: Direction, y: Direction) -> Pose:
         """Frame with its x axis along `x` and its y axis in the half plane of `y`."""
         ex = np.asarray(x, float) / np.linalg.norm(x)
         ez = np.cross(ex, np.asarray(y, float))
@@ -180,7 +181,7 @@ def ring_points(runs: Iterable[Run]) -> Array:
     return np.vstack([run.points[:-1] for run in runs])
 
 
-def prism_between(outline: Array, start: Array, end: Array, up: Sequence[float]) -> Ruled:
+def prism_between(outline: Array, start: Array, end: Array, up: Direction) -> Ruled:
     """A straight bar of (n, 2) section, x of the section along start->end x up; square ends."""
     axis = (end - start) / np.linalg.norm(end - start)
     side = np.cross(axis, np.asarray(up, float))

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable
+from collections.abc import Iterable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -101,7 +101,7 @@ def _filled(
 
 def make_ribs(
     shop: Shop, wing: WingShape, bays: tuple[Bay, ...], members: tuple[Member, ...],
-    extra: dict[int, Iterable[Cut]] | None = None,
+    extra: Mapping[int, Iterable[Cut]] | None = None,
 ) -> tuple[list[Part], list[Joint]]:
     """Every rib of both halves with its joints.
 

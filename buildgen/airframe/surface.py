@@ -11,11 +11,11 @@ from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
-from buildgen.section import Section, blend
 from shapely.geometry import Polygon
 
 from buildgen.aero.planform import Panel as PlanPanel
 from buildgen.design.schema import Wing
+from buildgen.section import Section, blend
 from buildgen.solid import Array, Pose, Ruled, ring
 
 PER_SIDE = 141
@@ -234,7 +234,7 @@ def shape_wing(wing: Wing, sections: dict[str, Section]) -> WingShape:
 
 
 def _contour(section: Section, chord_mm: float, least_edge_mm: float) -> Array:
-    return section.with_trailing_edge(least_edge_mm / chord_mm).contour(PER_SIDE)
+    return np.asarray(section.with_trailing_edge(least_edge_mm / chord_mm).contour(PER_SIDE))
 
 
 def section_at(panel: Panel, s_mm: float, inner: Section, outer: Section) -> Section:

@@ -113,7 +113,8 @@ class SparRun:
             return None
         kind = "spar in hole" if self.round else "stick in notch"
         way = self.bar.axis if self.round else self.run[0].up
-        return Joint(kind, self.parts[0].id, blank.id, (0.0, 0.6), tuple(float(v) for v in way))
+        x, y, z = (float(v) for v in way)
+        return Joint(kind, self.parts[0].id, blank.id, (0.0, 0.6), (x, y, z))
 
 
 @dataclass(frozen=True, eq=False)

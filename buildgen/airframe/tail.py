@@ -1,0 +1,212 @@
+"""Sheet tail: tailplane with elevator on the fuselage, fin with rudder on the tailplane."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+from functools import cached_property
+
+import numpy as np
+from shapely.geometry import Polygon, box
+
+from buildgen.aero.planform import Panel as PlanPanel
+from buildgen.aero.planform import area_mm2, mean_aerodynamic_chord
+from buildgen.airframe.blank import Blank, apply, lightening, solid_cut
+from buildgen.airframe.fuselage import Body
+from buildgen.airframe.shop import Shop
+from buildgen.airframe.surface import WingShape
+from buildgen.design.schema import Surface, Tail
+from buildgen.part import Bought, Joint, Part
+from buildgen.solid import Array, Circle, Placed, Pose, Prism
+
+STEP = "Tail"
+HINGE_GAP_MM = 0.5
+HINGE_G = 0.3
+"""A fibre hinge of 18 x 12 mm; common practice, no source."""
+HORN_G = 1.0
+
+
+@dataclass(frozen=True, eq=False)
+class Outline:
+    """Planform of one tail surface: half span (or height), chords, sweep of its leading edge."""
+
+    span_mm: float
+    root_mm: float
+    tip_mm: float
+    sweep_mm: float
+    control: float
+
+    @property
+    def panel(self) -> PlanPanel:
+        return PlanPanel(self.span_mm, self.root_mm, self.tip_mm, self.sweep_mm, 0.0)
+
+    @property
+    def area_mm2(self) -> float:
+        return self.span_mm * (self.root_mm + self.tip_mm) / 2
+
+    @property
+    def hinge_mm(self) -> float:
+        """x of the hinge line: straight across the span, at the control's share of the root."""
+        return self.root_mm * (1 - self.control)
+
+    def corners(self, tail_x: float) -> Polygon:
+        """Half outline in x (aft), y (out)."""
+        return Polygon([(0, 0), (tail_x, 0), (self.sweep_mm + self.tip_mm, self.span_mm),
+                        (self.sweep_mm, self.span_mm)])
+
+
+@dataclass(frozen=True, eq=False)
+class SheetTail:
+    """The tail in space and its parts."""
+
+    shop: Shop
+    wing: WingShape
+    body: Body | None
+    given: Tail
+
+    @cached_property
+    def thick_mm(self) -> float:
+        return self.shop.thickness(self.given.material, self.given.thickness_mm)
+
+    @cached_property
+    def tailplane(self) -> Outline:
+        mean = mean_aerodynamic_chord(self.wing.plan)
+        wanted = self.given.tailplane
+        area = 0.0
+        if wanted.volume is not None:
+            area = wanted.volume * 2 * area_mm2(self.wing.plan) * mean.length_mm / self.given.arm_mm
+        return _outline(wanted, area, halves=2, aspect=4.0)
+
+    @cached_property
+    def fin(self) -> Outline:
+        wanted = self.given.fin
+        area = 0.0
+        if wanted.volume is not None:
+            span = 2 * sum(p.rise_mm[0] for p in self.wing.plan)
+            area = wanted.volume * 2 * area_mm2(self.wing.plan) * span / self.given.arm_mm
+        return _outline(wanted, area, halves=1, aspect=1.6)
+
+    @cached_property
+    def tailplane_le_mm(self) -> float:
+        """x of the tailplane's root leading edge, from the arm between the quarter chords."""
+        wing = mean_aerodynamic_chord(self.wing.plan)
+        tail = mean_aerodynamic_chord((self.tailplane.panel,))
+        return wing.quarter_x_mm + self.given.arm_mm - tail.quarter_x_mm
+
+    @cached_property
+    def level_mm(self) -> float:
+        """z of the tailplane's lower face: on top of the fuselage."""
+        if self.body is None:
+            return 0.0
+        return self.body.top(self.tailplane_le_mm + self.tailplane.root_mm / 3)
+
+    @cached_property
+    def flat(self) -> Pose:
+        """Frame of the tailplane: x aft, y starboard, lower face z = 0."""
+        angle = np.radians(self.given.tailplane.incidence_deg)
+        return Pose.at((self.tailplane_le_mm, 0, self.level_mm),
+                       (np.cos(angle), 0, -np.sin(angle)), (0, 1, 0))
+
+    @cached_property
+    def upright(self) -> Pose:
+        """Frame of the fin: x aft, y up, centred on the plane of symmetry."""
+        x = self.tailplane_le_mm + self.tailplane.root_mm - self.fin.root_mm
+        at = (x, self.thick_mm / 2, self.level_mm + self.thick_mm)
+        return Pose.at(at, (1, 0, 0), (0, 0, 1))
+
+    # ------------------------------------------------------------ parts
+
+    @cached_property
+    def _fin_outline(self) -> Polygon:
+        """Fixed fin with its tab through the tailplane."""
+        fixed = self.fin.hinge_mm
+        whole = self.fin.corners(self.fin.root_mm)
+        fin = whole.intersection(box(-500, 0, fixed - HINGE_GAP_MM / 2, 2000))
+        tab = box(0.25 * fixed, -self.thick_mm, 0.75 * fixed, 1.0)
+        return fin.union(tab)
+
+    def _plate(self, id: str, name: str, outline: Polygon, pose: Pose, key: str,
+               web: bool = False) -> Part:
+        given = self.given
+        circles: tuple[Circle, ...] = ()
+        if web:
+            line = _centre_line(outline)
+            least = max(8.0, self.shop.web_mm(given.material, self.thick_mm, "tail.material"))
+            circles = lightening(outline, (), line, least, 12.0, most=12)
+        return self.shop.plate(id, name, given.material, given.thickness_mm, outline, pose, STEP,
+                               key, circles=circles, grain_deg=90.0)
+
+    @cached_property
+    def parts(self) -> tuple[Part, ...]:
+        plane, fin = self.tailplane, self.fin
+        whole = _both_halves(plane)
+        hinge, gap = plane.hinge_mm, HINGE_GAP_MM / 2
+        far = 4000.0
+        blank = Blank("T1", self.flat, self.thick_mm,
+                      whole.intersection(box(-far, -far, hinge - gap, far)))
+        tab = Placed(Prism(self._fin_outline, self.thick_mm), self.upright)
+        slot = solid_cut(tab, blank, self.shop.press_mm)
+        fixed, _, _ = apply(blank.outline, [slot])
+        moving = whole.intersection(box(hinge + gap, -far, far, far))
+        rudder_at = fin.hinge_mm + gap
+        rudder = fin.corners(fin.root_mm).intersection(box(rudder_at, 3.0, far, far))
+        tail, given = "tail.tailplane", self.given
+        parts = [
+            self._plate("T1", "tailplane", fixed, self.flat, tail, given.tailplane.lightening),
+            self._plate("T2", "elevator", moving, self.flat, tail),
+            self._plate("V1", "fin", self._fin_outline, self.upright, "tail.fin",
+                        given.fin.lightening),
+            self._plate("V2", "rudder", rudder, self.upright, "tail.fin"),
+        ]
+        return (*parts, *self._hardware())
+
+    def _hardware(self) -> list[Part]:
+        parts = []
+        for id, name, surface, outline, pose, key in (
+            ("HE", "elevator", self.given.tailplane, self.tailplane, self.flat, "tail.tailplane"),
+            ("HR", "rudder", self.given.fin, self.fin, self.upright, "tail.fin"),
+        ):
+            y = 0.0 if name == "elevator" else outline.span_mm / 2
+            at = Pose(origin=pose((outline.hinge_mm, y, self.thick_mm / 2)))
+            mass = surface.hinges * HINGE_G
+            parts += [
+                Part(id, f"hinges of the {name}", "hinges",
+                     Bought(mass, 0.2 * mass, None, "fibre hinge, 18 x 12 mm", surface.hinges),
+                     at, STEP, f"{key}.hinges"),
+                Part(f"{id}H", f"horn of the {name}", "horn",
+                     Bought(HORN_G, 0.3, None, "control horn with backing plate", 1),
+                     at, STEP, key),
+            ]
+        return parts
+
+    @property
+    def joints(self) -> tuple[Joint, ...]:
+        return (Joint("tab in slot", "V1", "T1", (0.0, 0.3), (0.0, 0.0, -1.0)),)
+
+
+def _outline(given: Surface, area: float, halves: int, aspect: float) -> Outline:
+    """From measures, or from an area with the aspect ratio and taper wanted."""
+    if given.volume is None:
+        assert given.span_mm is not None and given.root_chord_mm is not None
+        tip = given.tip_chord_mm or given.root_chord_mm
+        return Outline(given.span_mm / halves, given.root_chord_mm, tip, given.sweep_mm,
+                       given.control)
+    span = float(np.sqrt(area * (given.aspect or aspect)))
+    mean = area / span
+    root = 2 * mean / (1 + given.taper)
+    return Outline(span / halves, root, root * given.taper, given.sweep_mm, given.control)
+
+
+def _both_halves(outline: Outline) -> Polygon:
+    half = np.asarray(outline.corners(outline.root_mm).exterior.coords)[:-1]
+    return Polygon([*half[[0, 3, 2, 1]], *(half[[2, 3]] * (1, -1))])
+
+
+def _centre_line(outline: Polygon) -> Array:
+    """Points half way along the chord, from one tip to the other."""
+    x0, y0, x1, y1 = outline.bounds
+    ys = np.linspace(y0 + 2, y1 - 2, 120)
+    xs = []
+    for y in ys:
+        cut = outline.intersection(box(x0 - 1, y - 0.05, x1 + 1, y + 0.05))
+        xs.append((cut.bounds[0] + cut.bounds[2]) / 2)
+    return np.column_stack([xs, ys])
