@@ -4,12 +4,15 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable, Sequence
+from typing import TYPE_CHECKING
 
 from shapely.geometry import Polygon
 
 from buildgen.problems import Problem, nearest
-from buildgen.sheets.nest_fill import Item
 from buildgen.sheets.nest_types import NestFixed, NestPart, NestStock
+
+if TYPE_CHECKING:
+    from buildgen.sheets.nest_fill import Item
 
 
 def faulty_numbers(
