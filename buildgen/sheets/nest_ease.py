@@ -11,9 +11,10 @@ import numpy.typing as npt
 from shapely.geometry import LinearRing, Polygon
 
 from buildgen.sheets.nest_check import layout_is_sound
-from buildgen.sheets.nest_ease_core import LEAN, POSE, TOP, TURN, Crowd, X, Y, place, separate
 from buildgen.sheets.nest_field import fields_of
 from buildgen.sheets.nest_fill import Filling, Item, Shapes, outline_at
+from buildgen.sheets.nest_move import TOP, separate
+from buildgen.sheets.nest_press import LEAN, POSE, TURN, Crowd, X, Y, place
 from buildgen.sheets.nest_search import Dice, is_full
 from buildgen.sheets.nest_sheet import Kind, Sheet, Spot, posed
 
