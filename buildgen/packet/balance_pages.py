@@ -68,7 +68,9 @@ def verdict(b: Balance) -> list[str]:
     percent = (b.cg_mm[0] - b.mac_le_x_mm) / b.mac_mm * 100 if b.mac_mm else 0.0
     lines = [
         words.CG_TEXT.format(
-            cg=fixed(b.cg_mm[0]), sigma=fixed(b.cg_sigma_mm), percent=fixed(percent),
+            cg=fixed(abs(b.cg_mm[0])),
+            where=words.BEHIND_LE if b.cg_mm[0] >= 0 else words.AHEAD_OF_LE,
+            sigma=fixed(b.cg_sigma_mm), percent=fixed(percent),
             mac=fixed(b.mac_mm), mac_le=fixed(b.mac_le_x_mm),
         )
     ]

@@ -36,7 +36,8 @@ class Line:
 
     @property
     def quantity(self) -> str:
-        return f"{plain(self.amount, 2)} {self.unit}".strip()
+        unit = words.ONE.get(self.unit, self.unit) if self.amount == 1 else self.unit
+        return f"{plain(self.amount, 2)} {unit}".strip()
 
 
 def bill(package: Package) -> tuple[Line, ...]:
@@ -44,7 +45,7 @@ def bill(package: Package) -> tuple[Line, ...]:
     return (*_to_make(package), *_stock(package), *_to_buy(package))
 
 
-def _grouped(parts: Iterable[Part], key: str = "") -> list[tuple[tuple[str, ...], list[Part]]]:
+def _grouped(parts: Iterable[Part]) -> list[tuple[tuple[str, ...], list[Part]]]:
     """Parts by material and size, in alphabetical order; parts keep theirs."""
     def where(part: Part) -> tuple[str, ...]:
         return (part.material, part_size(part))

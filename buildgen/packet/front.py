@@ -12,6 +12,7 @@ from buildgen.packet import words
 from buildgen.packet.amounts import fixed, grams, plain
 from buildgen.packet.package import Package
 from buildgen.packet.page import (
+    HEIGHT_MM,
     NOTE,
     TEXT,
     WIDTH_MM,
@@ -24,19 +25,22 @@ from buildgen.packet.three_view import three_view
 
 BIG = ParagraphStyle("big", TEXT, fontName=BOLD, fontSize=24, leading=29, spaceAfter=1.5 * mm)
 ROW_MM, PER_ROW = 12.5, 4
+AROUND_MM = 54.0
+"""Room for a title of two lines, the revision, gaps and the note."""
 
 
 def front(package: Package) -> list[Flowable]:
     """The title page."""
     title, figures = package.kit.title, key_figures(package)
     rows = -(-len(figures) // PER_ROW)
+    room = HEIGHT_MM - AROUND_MM - rows * ROW_MM
     return [
         Heading(title.title or title.name, 0, BIG),
-        text(title.name + "    " + words.REVISION.format(
+        text(title.name + " · " + words.REVISION.format(
             revision=title.revision, hash=title.short_hash)),
         *([text(package.definition.kind, NOTE)] if package.definition.kind else []),
         gap(6),
-        three_view(package.kit, package.balance, WIDTH_MM, 158),
+        three_view(package.kit, package.balance, WIDTH_MM, room),
         gap(6),
         Picture(WIDTH_MM, rows * ROW_MM, partial(_paint_figures, figures)),
         text(words.ESTIMATED, NOTE),
@@ -59,8 +63,8 @@ def key_figures(package: Package) -> list[tuple[str, str, str]]:
         loading = b.mass_g / area_dm2
         figures.append((words.LOADING, f"{fixed(loading)} g/dm²",
                         f"{fixed(loading * 0.327706, 1)} oz/ft²"))
-    figures.append((words.CG, f"{fixed(b.cg_mm[0])} ± {fixed(b.cg_sigma_mm)} mm",
-                    words.BEHIND_LE))
+    figures.append((words.CG, f"{fixed(abs(b.cg_mm[0]))} ± {fixed(b.cg_sigma_mm)} mm",
+                    words.BEHIND_LE if b.cg_mm[0] >= 0 else words.AHEAD_OF_LE))
     if b.static_margin is not None:
         figures.append((words.MARGIN, f"{fixed(b.static_margin * 100)} %", words.OF_MAC))
     power = package.definition.power

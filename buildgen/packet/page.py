@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import re
 from collections.abc import Sequence
 from dataclasses import dataclass
 from io import BytesIO
@@ -82,7 +83,12 @@ def id_of(canvas: Any) -> int:
 
 def text(words_: str, style: ParagraphStyle = TEXT) -> Paragraph:
     """A paragraph of plain words."""
-    return Paragraph(escape(words_), style)
+    return Paragraph(escape(unbroken(words_)), style)
+
+
+def unbroken(words_: str) -> str:
+    """Figures stay on the line of their unit."""
+    return re.sub(r"(?<=\d) (?=(%|±|g|mm|in|m|V|°C)\b|[%±])", "\u00a0", words_)
 
 
 def gap(height_mm: float) -> Spacer:
@@ -125,6 +131,7 @@ def table(columns: Sequence[Column], rows: Sequence[Sequence[str]], total: bool 
         ("BOTTOMPADDING", (0, 0), (-1, -1), 2.6),
         ("LEFTPADDING", (0, 0), (-1, -1), 0),
         ("RIGHTPADDING", (0, 0), (-1, -1), 6),
+        *(("RIGHTPADDING", (k, 0), (k, -1), 11) for k, c in enumerate(columns) if c.number),
         ("RIGHTPADDING", (-1, 0), (-1, -1), 0),
         ("LINEBELOW", (0, 0), (-1, 0), LINE_PT, INK),
         ("LINEBELOW", (0, 1), (-1, -1), HAIR_PT, PALE),

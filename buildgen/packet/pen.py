@@ -43,7 +43,7 @@ def use_letters() -> None:
 
 def text_width_mm(text: str, size_pt: float = SMALL_PT, bold: bool = False) -> float:
     use_letters()
-    return float(pdfmetrics.stringWidth(text, BOLD if bold else PLAIN, size_pt)) / mm
+    return float(pdfmetrics.stringWidth(text, BOLD if bold else PLAIN, size_pt) / mm)
 
 
 def fitted(text: str, width_mm: float, size_pt: float = SMALL_PT) -> str:

@@ -13,7 +13,7 @@ from buildgen.packet.amounts import fixed, grams, listed
 from buildgen.packet.cautions import caution
 from buildgen.packet.package import Package
 from buildgen.packet.page import CELL, NOTE, WIDTH_MM, Heading, gap, text
-from buildgen.packet.shaded import NEW_EDGE, Shown, part_triangles, shaded
+from buildgen.packet.shaded import part_triangles, shaded
 from buildgen.part import Part, Printed
 from buildgen.solid import Array, Pose
 
@@ -61,8 +61,8 @@ def _cell(package: Package, key: str, parts: list[Part]) -> list[Flowable]:
     files = ", ".join(package.print_files(parts[0]))
     copies = words.PRINT_COPIES.format(count=len(parts), ids=listed([p.id for p in parts], 8))
     return [
-        shaded([Shown(first, TONE, NEW_EDGE)], *PICTURE_MM),
-        text(f"{key}  {parts[0].name}", CELL),
+        shaded([first], *PICTURE_MM, tones=(TONE, TONE)),
+        text(f"{key} · {parts[0].name}", CELL),
         text(words.PRINT_FACTS.format(mass=grams(first.mass_g), size=size,
                                       material=first.material), CELL),
         text(copies, CELL),

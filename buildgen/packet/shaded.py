@@ -3,38 +3,37 @@
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from functools import lru_cache
+from typing import TypeAlias
 
 import numpy as np
+from numpy.typing import NDArray
 from PIL import Image
 from reportlab.lib.units import mm
 from reportlab.lib.utils import ImageReader
 
 from buildgen.packet.pen import SMALL_PT, Pen, Picture, text_width_mm
-from buildgen.packet.render import Scene, Tone, isometric, picture
+from buildgen.packet.render import Batch, Ints, Scene, isometric
 from buildgen.packet.view import Direction
 from buildgen.part import Cover, Part
 from buildgen.solid import Array, Placed, Surface, mesh, triangles
 
+Tone: TypeAlias = tuple[float, float, float]
+Bytes: TypeAlias = NDArray[np.uint8]
 NEW: Tone = (0.93, 0.78, 0.55)
 NEW_EDGE: Tone = (0.10, 0.10, 0.12)
 EARLIER: Tone = (0.95, 0.95, 0.95)
 EARLIER_EDGE: Tone = (0.74, 0.75, 0.77)
 PIXELS_PER_MM, OVER = 6.0, 2
-MARGIN = 0.06
+MARGIN, LEVELS, LEAST_PIXELS = 0.06, 48, 30
+HIDDEN_EDGE: Tone = (0.48, 0.44, 0.38)
+PAPER: Tone = (1.0, 1.0, 1.0)
+EDGE_CODE = 3 * LEVELS
+PAPER_CODE = EDGE_CODE + 3
 
 
-@dataclass(frozen=True)
-class Shown:
-    """A part in a picture: with its tones, and its id written on it or not."""
-
-    part: Part
-    fill: Tone
-    edge: Tone
-    label: str = ""
-
-
-def part_triangles(part: Part) -> tuple[Array, np.ndarray] | None:
+@lru_cache(maxsize=4096)
+def part_triangles(part: Part) -> tuple[Array, Ints] | None:
     """Vertices in the aircraft's frame and faces; None for what has no shape."""
     if part.shape is None:
         return None
@@ -45,22 +44,30 @@ def part_triangles(part: Part) -> tuple[Array, np.ndarray] | None:
 
 
 def shaded(
-    shown: Sequence[Shown],
+    new: Sequence[Part],
     width_mm: float,
     height_mm: float,
+    earlier: Sequence[Part] = (),
     frame: Array | None = None,
-    way: Direction | None = None,
+    label: bool = False,
+    tones: tuple[Tone, Tone] = (NEW, EARLIER),
 ) -> Picture:
-    """A picture of parts; `frame` (n, 3) are points that it has to hold, else all of them."""
-    way = way or isometric()
-    meshes = [(s, t) for s in shown if (t := part_triangles(s.part)) is not None]
-    held = frame if frame is not None else np.vstack([v for _, (v, _) in meshes])
-    scene = _framed(held, way, width_mm, height_mm)
-    for owner, (s, (vertices, faces)) in enumerate(meshes):
-        scene.add(vertices, faces, owner, two_sided=isinstance(s.part.form, Cover))
-    pixels = picture(scene, [s.fill for s, _ in meshes], [s.edge for s, _ in meshes], OVER)
-    image = ImageReader(Image.fromarray(pixels))
-    labels = _labels(scene, [s for s, _ in meshes], width_mm, height_mm)
+    """A picture of parts: new ones strong, earlier ones pale; what those hide shines through.
+
+    Args:
+        frame: (n, 3) points that the picture has to hold; else all new parts.
+        label: write the ids of new parts where they fit.
+    """
+    drawn = [p for p in new if part_triangles(p) is not None]
+    old = [p for p in earlier if part_triangles(p) is not None]
+    held = frame if frame is not None else np.vstack([_mesh(p)[0] for p in drawn])
+    front = _framed(held, isometric(), width_mm, height_mm)
+    front.add(_batch(drawn, 0))
+    whole = front.copy()
+    if old:
+        whole.add(_batch(old, len(drawn)))
+    image = ImageReader(_coloured(front, whole, len(drawn), tones))
+    labels = _labels(front, drawn, width_mm, height_mm) if label else []
 
     def paint(pen: Pen) -> None:
         pen.canvas.drawImage(image, 0, 0, width_mm * mm, height_mm * mm)
@@ -68,6 +75,52 @@ def shaded(
             pen.text((x, y), words, SMALL_PT - 1, "middle", halo=True)
 
     return Picture(width_mm, height_mm, paint)
+
+
+def _mesh(part: Part) -> tuple[Array, Ints]:
+    found = part_triangles(part)
+    assert found is not None
+    return found
+
+
+def _batch(parts: Sequence[Part], first: int) -> Batch:
+    return Batch.of([
+        (owner, *_mesh(p), isinstance(p.form, Cover)) for owner, p in enumerate(parts, first)
+    ])
+
+
+def _coloured(
+    front: Scene, whole: Scene, new: int, tones: tuple[Tone, Tone]
+) -> Image.Image:
+    """Both scenes in their tones, at the size of the page.
+
+    Painted with a palette: three ramps (new, earlier, new behind earlier), their edges, paper.
+    """
+    owner = whole.rows(whole.owner)
+    codes = _levels(whole) + np.where(owner < new, 0, LEVELS).astype(np.uint8)
+    codes[owner < 0] = PAPER_CODE
+    edge = whole.edges()
+    codes[edge] = np.where(whole.nearest()[edge] < new, EDGE_CODE, EDGE_CODE + 1)
+    hidden = (front.rows(front.owner) >= 0) & (front.rows(front.owner) != owner)
+    if hidden.any():
+        codes[hidden] = _levels(front)[hidden] + 2 * LEVELS
+        codes[hidden & front.edges()] = EDGE_CODE + 2
+    pale = tuple((new_ + 2 * old_) / 3 for new_, old_ in zip(*tones, strict=True))
+    ramps = [_ramp(tones[0], 0.42), _ramp(tones[1], 0.16), _ramp(pale, 0.25)]
+    lines = np.array([NEW_EDGE, EARLIER_EDGE, HIDDEN_EDGE, PAPER]) * 255
+    image = Image.fromarray(codes, "L")
+    image.putpalette(np.rint(np.vstack([*ramps, lines])).astype(np.uint8).tobytes())
+    return image.convert("RGB").reduce(OVER)
+
+
+def _levels(scene: Scene) -> Bytes:
+    return np.asarray(scene.rows(scene.shade) * (LEVELS - 1) + 0.5, np.uint8)
+
+
+def _ramp(tone: Sequence[float], depth: float) -> Array:
+    """(LEVELS, 3): the tone from its darkest to its full light, 0 to 255."""
+    light = 1 - depth + depth * np.linspace(0, 1, LEVELS)
+    return np.asarray(light[:, None] * np.array(tone) * 255)
 
 
 def _framed(points: Array, way: Direction, width_mm: float, height_mm: float) -> Scene:
@@ -81,26 +134,21 @@ def _framed(points: Array, way: Direction, width_mm: float, height_mm: float) ->
 
 
 def _labels(
-    scene: Scene, shown: Sequence[Shown], width_mm: float, height_mm: float
+    scene: Scene, parts: Sequence[Part], width_mm: float, height_mm: float
 ) -> list[tuple[float, float, str]]:
-    """Ids at the middle of what is seen of each part, left out where they would collide."""
+    """Ids in the middle of what is seen of each part, left out where they would collide."""
     placed: list[tuple[float, float, str]] = []
-    owners = scene.image_rows(scene.owner)
-    per_x, per_y = width_mm / scene.width, height_mm / scene.height
-    for owner, s in enumerate(shown):
-        if not s.label:
-            continue
+    owners = scene.rows(scene.owner)
+    for owner, part in enumerate(parts):
         rows, columns = np.nonzero(owners == owner)
-        if len(rows) < 30:
+        if len(rows) < LEAST_PIXELS:
             continue
-        middle = np.argmin(
-            (rows - rows.mean()) ** 2 + (columns - columns.mean()) ** 2
-        )
-        x = float(columns[middle]) * per_x
-        y = height_mm - float(rows[middle]) * per_y - 0.8
-        half = text_width_mm(s.label, SMALL_PT - 1) / 2 + 0.6
+        middle = np.argmin((rows - rows.mean()) ** 2 + (columns - columns.mean()) ** 2)
+        half = text_width_mm(part.id, SMALL_PT - 1) / 2 + 0.6
+        x = float(columns[middle]) * width_mm / scene.width
         x = min(max(x, half), width_mm - half)
+        y = height_mm * (1 - float(rows[middle]) / scene.height) - 0.8
         if all(abs(y - q) > 2.8 or abs(x - p) > half + text_width_mm(w, SMALL_PT - 1) / 2 + 0.6
                for p, q, w in placed):
-            placed.append((x, y, s.label))
+            placed.append((x, y, part.id))
     return placed

@@ -50,9 +50,9 @@ def sheet_pages(package: Package) -> list[Flowable]:
 def _block(package: Package, sheet: Sheet) -> list[Flowable]:
     parts = package.kit.by_id
     mass = sum(parts[p.part].mass_g for p in sheet.placements)
-    listed = "   ".join(f"{n} {p.part}" for n, p in enumerate(sheet.placements, start=1))
+    listed = ", ".join(f"{n}\u00a0{p.part}" for n, p in enumerate(sheet.placements, start=1))
     return [
-        Heading(f"{sheet.file}   {sheet.material} {with_inches(sheet.thickness_mm)}, "
+        Heading(f"{sheet.file} · {sheet.material} {with_inches(sheet.thickness_mm)}, "
                 f"{size_with_inches(sheet.width_mm, sheet.height_mm)}", 1),
         sheet_picture(package, sheet),
         gap(1),

@@ -3,22 +3,16 @@
 from __future__ import annotations
 
 import numpy as np
-from reportlab.platypus import Flowable, KeepTogether, PageBreak
+from reportlab.lib.units import mm
+from reportlab.platypus import CondPageBreak, Flowable, KeepTogether, PageBreak
 
 from buildgen.packet import words
 from buildgen.packet.amounts import grams
 from buildgen.packet.cautions import caution
+from buildgen.packet.kit_json import quantity
 from buildgen.packet.package import Package
 from buildgen.packet.page import NOTE, WIDTH_MM, Column, Heading, gap, table, text
-from buildgen.packet.shaded import (
-    EARLIER,
-    EARLIER_EDGE,
-    NEW,
-    NEW_EDGE,
-    Shown,
-    part_triangles,
-    shaded,
-)
+from buildgen.packet.shaded import part_triangles, shaded
 from buildgen.packet.tables import where_from
 from buildgen.part import Cover, Part
 from buildgen.solid import Array
@@ -28,7 +22,7 @@ COLUMNS = (
     Column(words.SHEET_OF, 38), Column(words.MASS_G, 14, True),
 )
 PICTURE_HIGH_MM = 82.0
-LABEL_MOST = 24
+LABEL_MOST, SHORT_TABLE = 40, 12
 BOX = "☐"
 
 
@@ -46,21 +40,27 @@ def step_pages(package: Package) -> list[Flowable]:
 
 def _block(package: Package, title: str, new: list[Part], earlier: list[Part]) -> list[Flowable]:
     rows = [
-        [BOX, p.id, p.name, p.material, where_from(package, p), grams(p.mass_g)] for p in new
+        [BOX, p.id, _counted(p), p.material, where_from(package, p), grams(p.mass_g)] for p in new
     ]
     head: list[Flowable] = [Heading(title, 1)]
     if any(part_triangles(p) is not None for p in new):
         head.append(step_picture(new, earlier))
-    return [KeepTogether(head), table(COLUMNS, rows), gap(4)]
+    listed = table(COLUMNS, rows)
+    if len(rows) <= SHORT_TABLE:
+        return [KeepTogether([*head, listed]), gap(4)]
+    return [CondPageBreak((PICTURE_HIGH_MM + 50) * mm), *head, listed, gap(4)]
+
+
+def _counted(part: Part) -> str:
+    pieces = quantity(part)
+    return part.name if pieces == 1 else f"{pieces} x {part.name}"
 
 
 def step_picture(new: list[Part], earlier: list[Part]) -> Flowable:
     """New parts strong, earlier ones pale and without their coverings, framed on the new."""
-    label = len(new) <= LABEL_MOST
-    shown = [Shown(p, EARLIER, EARLIER_EDGE) for p in earlier if not isinstance(p.form, Cover)]
-    shown += [Shown(p, NEW, NEW_EDGE, p.id if label else "") for p in new]
-    frame = _frame([*new], [*new, *earlier])
-    return shaded(shown, WIDTH_MM, PICTURE_HIGH_MM, frame)
+    bare = [p for p in earlier if not isinstance(p.form, Cover)]
+    return shaded(new, WIDTH_MM, PICTURE_HIGH_MM, bare, _frame(new, [*new, *bare]),
+                  label=len(new) <= LABEL_MOST)
 
 
 def _frame(new: list[Part], every: list[Part]) -> Array:

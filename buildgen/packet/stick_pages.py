@@ -38,7 +38,7 @@ def stick_pages(package: Package) -> list[Flowable]:
     for plan in package.stick_plans:
         high = ROW_MM * len(plan.bars)
         story.append(KeepTogether([
-            Heading(f"{plan.material} {plan.section} mm   "
+            Heading(f"{plan.material} {plan.section} mm · "
                     f"{len(plan.bars)} x {size_with_inches(plan.stock_length_mm)}", 1),
             Picture(WIDTH_MM, high, partial(_paint, plan, high)),
         ]))

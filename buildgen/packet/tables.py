@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 from reportlab.platypus import Flowable, PageBreak
 
 from buildgen.packet import words
@@ -9,7 +11,7 @@ from buildgen.packet.amounts import fixed, grams, listed
 from buildgen.packet.bill import Line, bill
 from buildgen.packet.package import Package
 from buildgen.packet.page import NOTE, Column, Heading, gap, table, text
-from buildgen.part import Part, Plate, Stick
+from buildgen.part import Bought, Part, Plate, Stick
 
 BILL_COLUMNS = (
     Column(words.ITEM, 62), Column(words.SIZE, 44), Column(words.QUANTITY, 25, True),
@@ -56,14 +58,10 @@ def index_pages(package: Package) -> list[Flowable]:
 
 def natural(part_id: str) -> tuple[tuple[int, int | str], ...]:
     """Sorts R2 before R10."""
-    pieces: list[tuple[int, int | str]] = []
-    run = ""
-    for letter in part_id + "\0":
-        if run and letter.isdigit() != run[0].isdigit():
-            pieces.append((0, int(run)) if run[0].isdecimal() else (1, run))
-            run = ""
-        run += letter
-    return tuple(pieces)
+    return tuple(
+        (0, int(run)) if run.isdigit() else (1, run)
+        for run in re.findall(r"[0-9]+|[^0-9]+", part_id)
+    )
 
 
 def where_from(package: Package, part: Part) -> str:
@@ -77,5 +75,6 @@ def where_from(package: Package, part: Part) -> str:
         )
     if isinstance(part.form, Stick):
         return f"{part.form.section}, {fixed(part.form.length_mm)} mm"
-    files = package.print_files(part)
-    return part.files_key if files else ""
+    if isinstance(part.form, Bought):
+        return part.form.order
+    return part.files_key if package.print_files(part) else ""

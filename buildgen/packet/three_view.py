@@ -26,7 +26,7 @@ from buildgen.packet.view import FROM_ABOVE, FROM_FRONT, FROM_LEFT, View, eased,
 from buildgen.part import Cover, Kit
 
 SCALES = (1, 2, 2.5, 4, 5, 6, 7.5, 8, 10, 12, 12.5, 15, 20, 25, 30, 40, 50, 60, 80, 100)
-BETWEEN_MM, LABEL_MM, DIM_MM = 8.0, 6.0, 9.0
+BETWEEN_MM, LABEL_MM, DIM_MM = 5.0, 5.0, 8.0
 
 
 def round_scale(room_mm: Point, size_mm: Point) -> float:
@@ -110,7 +110,7 @@ def _marks(pen: Pen, view: View, balance: Balance, n: float, side_on: bool) -> N
     if side_on:
         fore, aft = (view.way.flat((x, 0, balance.cg_mm[2])) for x in balance.target_cg_x_mm)
         for end in (fore, aft):
-            pen.line([end - (0, 4 * n), end + (0, 4 * n)], HEAVY_PT, ACCENT)
+            pen.line(np.array([end - (0, 4 * n), end + (0, 4 * n)]), HEAVY_PT, ACCENT)
         if balance.neutral_point_x_mm is not None:
             diamond(pen, view.way.flat((balance.neutral_point_x_mm, 0, balance.cg_mm[2])), n)
     cg_mark(pen, view.way.flat(balance.cg_mm), 1.7)

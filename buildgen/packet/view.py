@@ -82,7 +82,8 @@ class View:
 
     @property
     def bounds(self) -> tuple[float, float, float, float]:
-        return self.outline.bounds
+        low_x, low_y, high_x, high_y = self.outline.bounds
+        return low_x, low_y, high_x, high_y
 
     @property
     def size_mm(self) -> tuple[float, float]:
