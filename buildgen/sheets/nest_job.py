@@ -33,20 +33,20 @@ class _Bounds:
     """How much to search.
 
     Attributes:
-        tries: changed orders when filling sheets.
+        laid: copies laid in all when trying changed orders, two of these at least.
         work_least: points held against outlines when easing; about 120 million take a second.
         work_each: the same for each copy; the larger of the two sums counts.
     """
 
-    tries: int
+    laid: int
     work_least: int
     work_each: int
 
 
 EFFORTS = {
-    "quick": _Bounds(2, 20_000_000, 1_000_000),
-    "normal": _Bounds(20, 300_000_000, 20_000_000),
-    "high": _Bounds(100, 1_500_000_000, 80_000_000),
+    "quick": _Bounds(140, 20_000_000, 1_000_000),
+    "normal": _Bounds(3_200, 300_000_000, 18_000_000),
+    "high": _Bounds(16_000, 1_500_000_000, 80_000_000),
 }
 
 
@@ -107,7 +107,8 @@ class _Job:
 
     def _laid(self, kinds: Sequence[Kind]) -> Filling:
         begun = _begun(kinds, self.fixed)
-        return best_filling(self.items, self.shapes, kinds, begun, self.bounds.tries)
+        tries = max(2, self.bounds.laid // len(self.items))
+        return best_filling(self.items, self.shapes, kinds, begun, tries)
 
     def _eased(self, filling: Filling, kinds: Sequence[Kind]) -> Filling:
         easing = Easing(filling, self.items, self.shapes, kinds, self.spacing_mm, self.margin_mm)
