@@ -46,7 +46,9 @@ PAGE_MM = (A4[0] / mm, A4[1] / mm)
 WIDTH_MM = PAGE_MM[0] - 2 * MARGIN_MM
 HEIGHT_MM = PAGE_MM[1] - TOP_MM - BOTTOM_MM
 
-TEXT = ParagraphStyle("text", fontName=PLAIN, fontSize=TEXT_PT, leading=12.5, textColor=INK)
+TEXT = ParagraphStyle(
+    "text", fontName=PLAIN, bulletFontName=PLAIN, fontSize=TEXT_PT, leading=12.5, textColor=INK
+)
 CELL = ParagraphStyle("cell", TEXT, fontSize=SMALL_PT + 0.3, leading=9.6)
 CELL_RIGHT = ParagraphStyle("cell right", CELL, alignment=TA_RIGHT)
 NOTE = ParagraphStyle("note", TEXT, fontSize=SMALL_PT, leading=10, textColor=SOFT)
