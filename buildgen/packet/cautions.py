@@ -7,7 +7,7 @@ from reportlab.lib.units import mm
 from reportlab.platypus import Flowable, KeepTogether, PageBreak, Table
 
 from buildgen.packet import words
-from buildgen.packet.page import NOTE, PART_HEAD, TEXT, WIDTH_MM, Heading, gap, text
+from buildgen.packet.page import NOTE, PLAIN_CELLS, PART_HEAD, TEXT, WIDTH_MM, Heading, gap, text
 from buildgen.packet.pen import BOLD, INK, LINE_PT, SMALL_PT
 
 GUTTER_MM = 8.0
@@ -20,7 +20,7 @@ def caution_pages() -> list[Flowable]:
     """One page in two columns under the sentence that matters most."""
     width = WIDTH_MM * mm
     framed = Table([[text(words.NOT_APPROVAL, FRAMED)]], colWidths=[width])
-    framed.setStyle([("BOX", (0, 0), (-1, -1), LINE_PT, INK),
+    framed.setStyle([PLAIN_CELLS, ("BOX", (0, 0), (-1, -1), LINE_PT, INK),
                      *((side, (0, 0), (-1, -1), 8)
                        for side in ("LEFTPADDING", "RIGHTPADDING", "TOPPADDING",
                                     "BOTTOMPADDING"))])
@@ -28,7 +28,7 @@ def caution_pages() -> list[Flowable]:
     columns = [_column(words.CAUTION_GROUPS[:half]), _column(words.CAUTION_GROUPS[half:])]
     wide = (width - GUTTER_MM * mm) / 2
     pair = Table([columns], colWidths=[wide + GUTTER_MM * mm, wide])
-    pair.setStyle([("VALIGN", (0, 0), (-1, -1), "TOP"),
+    pair.setStyle([PLAIN_CELLS, ("VALIGN", (0, 0), (-1, -1), "TOP"),
                    ("LEFTPADDING", (0, 0), (-1, -1), 0),
                    ("RIGHTPADDING", (0, 0), (0, 0), GUTTER_MM * mm),
                    ("RIGHTPADDING", (1, 0), (1, 0), 0)])

@@ -58,6 +58,9 @@ PART_HEAD = ParagraphStyle(
     spaceAfter=1.6 * mm, keepWithNext=1,
 )
 
+PLAIN_CELLS = ("FONTNAME", (0, 0), (-1, -1), PLAIN)
+"""Without it a table names a letter that is not embedded."""
+
 
 class Heading(Paragraph):  # type: ignore[misc]
     """A heading that is a bookmark as well, and names the pages that follow."""
@@ -128,6 +131,7 @@ def table(columns: Sequence[Column], rows: Sequence[Sequence[str]], total: bool 
         hAlign="LEFT",
     )
     ruled: list[tuple[Any, ...]] = [
+        PLAIN_CELLS,
         ("VALIGN", (0, 0), (-1, -1), "TOP"),
         ("TOPPADDING", (0, 0), (-1, -1), 1.9),
         ("BOTTOMPADDING", (0, 0), (-1, -1), 2.6),
