@@ -30,7 +30,8 @@ class Problem:
         return replace(self, file=file, line=line)
 
     def __str__(self) -> str:
-        place = f"{self.file}:{self.line}: " if self.line else (f"{self.file}: " if self.file else "")
+        line = f":{self.line}" if self.line else ""
+        place = f"{self.file}{line}: " if self.file else ""
         key = f"{self.path}: " if self.path else ""
         return f"{place}{key}{self.says} {self.hint}".rstrip()
 

@@ -1,0 +1,6 @@
+"""python -m buildgen"""
+
+from buildgen.cli import main
+
+if __name__ == "__main__":
+    main()

@@ -1,0 +1,79 @@
+"""Everything of a build onto disk: sheets, prints, lists, packet, model, manifest."""
+
+from __future__ import annotations
+
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+from buildgen.packet.package import Package
+from buildgen.packet.write import write_manifest, write_packet
+from buildgen.prints.files import start
+from buildgen.prints.model import write_glb
+from buildgen.problems import DesignError, Problem
+from buildgen.sheets.dxf import sheet_dxf
+from buildgen.sheets.sticks import sticks_csv
+from buildgen.sheets.svg import sheet_svg
+
+if TYPE_CHECKING:
+    from buildgen.build import Build
+
+
+def write_all(build: Build, room: Path) -> None:
+    """The whole packet: solids in a process of their own beside the flat work."""
+    (room / "prints").mkdir()
+    build.say("printing parts: solids")
+    job = start(build.of("print"), room / "prints")
+    try:
+        write_sheets(build, room)
+        (room / "model").mkdir()
+        write_glb(build, room / "model" / "airframe.glb")
+        reports = _sound(job.finish())
+    except BaseException:
+        job.stop()
+        raise
+    build.say("packet")
+    package = package_of(build, reports)
+    write_packet(package, room)
+    write_manifest(package, room)
+
+
+def write_cut(build: Build, room: Path) -> None:
+    """Sheets and the stick list."""
+    write_sheets(build, room)
+
+
+def write_mounts(build: Build, room: Path) -> None:
+    """The printed parts."""
+    build.say("printing parts: solids")
+    _sound(start(build.of("print"), room).finish())
+
+
+def write_sheets(build: Build, room: Path) -> None:
+    """DXF and SVG of each sheet, and sticks.csv."""
+    assert build.design is not None
+    folder = room / "sheets"
+    folder.mkdir()
+    laser = build.design.definition.laser
+    for sheet in build.sheets:
+        (folder / f"{sheet.file}.dxf").write_text(sheet_dxf(sheet, build, laser), "utf-8",
+                                                  newline="\n")
+        (folder / f"{sheet.file}.svg").write_text(sheet_svg(sheet, build, laser), "utf-8",
+                                                  newline="\n")
+    (room / "sticks.csv").write_text(sticks_csv(build.stick_plans), "utf-8", newline="\n")
+
+
+def package_of(build: Build, reports: tuple[Any, ...] = ()) -> Package:
+    """The bundle that the packet is written from."""
+    assert build.design is not None
+    return Package(
+        build, build.design.definition, build.sheets, build.stick_plans, build.balance,
+        build.checks, reports, build.design.text, build.design.file,
+    )
+
+
+def _sound(reports: tuple[Any, ...]) -> tuple[Any, ...]:
+    """Reports of prints that are all sound; else what is wrong with which."""
+    faults = [Problem("", f"print {r.key}: {fault}") for r in reports for fault in r.faults]
+    if faults:
+        raise DesignError(*faults)
+    return reports

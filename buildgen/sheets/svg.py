@@ -1,0 +1,54 @@
+"""A sheet as SVG in true millimetres, with the layers of the DXF as groups."""
+
+from __future__ import annotations
+
+from xml.sax.saxutils import escape
+
+from buildgen.design.schema import Laser
+from buildgen.part import Kit
+from buildgen.sheets.drawing import CUT_INSIDE, CUT_OUTSIDE, MARK, SHEET, Drawing, draw
+from buildgen.sheets.layout import Sheet
+from buildgen.solid import Array
+
+STROKES = {MARK: "#1a7f37", CUT_INSIDE: "#1f4fd8", CUT_OUTSIDE: "#c62828", SHEET: "#888888"}
+TITLE_ROOM_MM = 7.0
+HAIR_MM = 0.1
+
+
+def sheet_svg(sheet: Sheet, kit: Kit, laser: Laser) -> str:
+    """The text of the SVG file; y runs down, the sheet's lower left corner stays lower left."""
+    drawing = draw(sheet, kit, laser)
+    width, height = sheet.width_mm, sheet.height_mm + TITLE_ROOM_MM
+    groups = [
+        _group(SHEET, [_path(drawing.outline, height, True),
+                       *(_path(s, height, False) for s in drawing.title)]),
+        _group(MARK, [_path(s, height, False) for p in drawing.pieces for s in p.strokes]),
+        _group(CUT_INSIDE, _insides(drawing, height)),
+        _group(CUT_OUTSIDE, [_path(p.path.outside, height, True, p.part)
+                             for p in drawing.pieces]),
+    ]
+    head = (f'<svg xmlns="http://www.w3.org/2000/svg" width="{width:g}mm" height="{height:g}mm"'
+            f' viewBox="0 0 {width:g} {height:g}">\n<title>'
+            f"{escape(kit.title.line)}, {escape(sheet.file)}</title>\n")
+    return head + "\n".join(groups) + "\n</svg>\n"
+
+
+def _group(layer: str, elements: list[str]) -> str:
+    inner = "\n".join(e for e in elements if e)
+    return (f'<g id="{layer}" fill="none" stroke="{STROKES[layer]}" stroke-width="{HAIR_MM}">\n'
+            f"{inner}\n</g>")
+
+
+def _insides(drawing: Drawing, height: float) -> list[str]:
+    found = []
+    for piece in drawing.pieces:
+        found += [f'<circle cx="{x:.4f}" cy="{height - y:.4f}" r="{r:.4f}"/>'
+                  for x, y, r in piece.path.circles]
+        found += [_path(ring, height, True) for ring in piece.path.inside]
+    return found
+
+
+def _path(points: Array, height: float, close: bool, part: str = "") -> str:
+    steps = " L".join(f"{x:.4f} {height - y:.4f}" for x, y in points)
+    name = f' id="{escape(part)}"' if part else ""
+    return f'<path{name} d="M{steps}{" Z" if close else ""}"/>'
