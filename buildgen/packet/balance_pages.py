@@ -25,7 +25,7 @@ from buildgen.packet.pen import (
     Pen,
     Picture,
 )
-from buildgen.packet.three_view import cg_mark, diamond, draw_view, round_scale
+from buildgen.packet.three_view import cg_mark, diamond, draw_solid, round_scale
 from buildgen.packet.view import FROM_LEFT, View, view_of
 
 LANE_MM, MOST_HIGH_MM = 6.0, 60.0
@@ -148,7 +148,7 @@ def _paint(view: View, b: Balance, n: float, height: float, lanes: int, pen: Pen
     low_x, _, high_x, high_y = view.bounds
     at_x = WIDTH_MM / 2 - (low_x + high_x) / 2 / n
     inner = pen.scaled(1 / n, (at_x, height - high_y / n))
-    draw_view(inner, view, n)
+    draw_solid(inner, view, n)
     cg_x = at_x + b.cg_mm[0] / n
     pen.line([(cg_x, 0), (cg_x, height)], HAIR_PT, INK, dash=(4, 2, 1, 2))
     cg_mark(inner, view.way.flat(b.cg_mm), 2.0)

@@ -7,12 +7,12 @@ from reportlab.lib.units import mm
 from reportlab.platypus import Flowable, KeepTogether, PageBreak, Table
 
 from buildgen.packet import words
-from buildgen.packet.page import NOTE, PLAIN_CELLS, PART_HEAD, TEXT, WIDTH_MM, Heading, gap, text
+from buildgen.packet.page import NOTE, PART_HEAD, PLAIN_CELLS, TEXT, WIDTH_MM, Heading, gap, text
 from buildgen.packet.pen import BOLD, INK, LINE_PT, SMALL_PT
 
 GUTTER_MM = 8.0
-POINT = ParagraphStyle("point", TEXT, fontSize=SMALL_PT + 0.3, leading=9.8, leftIndent=3 * mm,
-                       bulletIndent=0, spaceAfter=1.1 * mm)
+POINT = ParagraphStyle("point", TEXT, fontSize=SMALL_PT + 0.3, leading=9.8, leftIndent=3.4 * mm,
+                       bulletFontSize=SMALL_PT - 1.5, bulletIndent=0, spaceAfter=1.1 * mm)
 FRAMED = ParagraphStyle("framed", TEXT, fontName=BOLD, fontSize=TEXT.fontSize, leading=12.5)
 
 

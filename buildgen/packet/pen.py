@@ -129,6 +129,13 @@ class Pen:
         corners = [low, (high[0], low[1]), high, (low[0], high[1])]
         self.shape(Polygon(corners), weight_pt, ink, fill, dash)
 
+    def clip(self, low: Point, high: Point) -> None:
+        """Draw only inside a rectangle, until the canvas' state is restored."""
+        (x0, y0), (x1, y1) = self.place(low), self.place(high)
+        path = self.canvas.beginPath()
+        path.rect(x0 * mm, y0 * mm, (x1 - x0) * mm, (y1 - y0) * mm)
+        self.canvas.clipPath(path, stroke=0, fill=0)
+
     def disc(self, centre: Point, radius_mm: float, weight_pt: float = THIN_PT, ink: Color = INK,
              fill: Color | None = None) -> None:
         """A circle of a radius on paper, whatever the scale."""

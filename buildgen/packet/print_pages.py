@@ -32,7 +32,8 @@ def print_pages(package: Package) -> list[Flowable]:
     rows = [cells[i : i + PER_ROW] for i in range(0, len(cells), PER_ROW)]
     rows[-1] += [[]] * (PER_ROW - len(rows[-1]))
     laid = Table(rows, colWidths=[WIDTH_MM / PER_ROW * mm] * PER_ROW)
-    laid.setStyle([PLAIN_CELLS, ("VALIGN", (0, 0), (-1, -1), "TOP"), ("LEFTPADDING", (0, 0), (-1, -1), 0),
+    laid.setStyle([PLAIN_CELLS, ("VALIGN", (0, 0), (-1, -1), "TOP"),
+                   ("LEFTPADDING", (0, 0), (-1, -1), 0),
                    ("RIGHTPADDING", (0, 0), (-1, -1), 0),
                    ("BOTTOMPADDING", (0, 0), (-1, -1), 6 * mm)])
     return [PageBreak(), Heading(words.PRINTS), caution("print"), text(words.PRINT_NOTE, NOTE),

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 from dataclasses import dataclass, field, replace
+from functools import cached_property
 from typing import Any
 
 import numpy as np
@@ -18,8 +19,8 @@ from buildgen.solid import Array
 Ints = NDArray[np.int64]
 ABOVE_LEFT = np.array([-0.35, 0.55, 0.76])
 """Where the light comes from, in the picture's right, up, towards the viewer."""
-SKIN_NEARER_PX = 2.0
-"""Skins are drawn a little nearer than the frame that they touch."""
+LEAST_FACING = 1e-4
+"""Faces seen at a flatter angle (sine) are left to their neighbours."""
 EDGE_SHADE, EDGE_PX = 0.08, 12.0
 """Steps of light and of depth that are drawn as an edge."""
 
@@ -35,26 +36,40 @@ def isometric(azimuth_deg: float = -125.0, height_deg: float = 32.0) -> Directio
 
 
 @dataclass(frozen=True, eq=False)
-class Batch:
-    """Meshes drawn together: each face has its owner and is two-sided, as skins are, or not."""
+class Facing:
+    """The faces of a mesh that are turned to the viewer, in the viewer's axes and mm.
 
-    vertices: Array
-    faces: Ints
-    owner: Ints
-    two_sided: NDArray[np.bool_]
+    Attributes:
+        corners: (m, 3, 3) face, corner, (right, up, towards the viewer).
+        light: (m,) 0 to 1.
+    """
 
-    @classmethod
-    def of(cls, meshes: Sequence[tuple[int, Array, Ints, bool]]) -> Batch:
-        """From (owner, vertices, faces, two-sided) of each mesh; at least one."""
-        counts = [len(vertices) for _, vertices, _, _ in meshes]
-        shifts = np.cumsum([0, *counts[:-1]])
-        sizes = [len(faces) for _, _, faces, _ in meshes]
-        return cls(
-            np.vstack([v for _, v, _, _ in meshes]),
-            np.vstack([f + shift for (_, _, f, _), shift in zip(meshes, shifts, strict=True)]),
-            np.repeat([owner for owner, _, _, _ in meshes], sizes),
-            np.repeat([two for _, _, _, two in meshes], sizes),
-        )
+    corners: Array
+    light: Array
+
+    @cached_property
+    def bounds(self) -> tuple[Array, Array]:
+        """Lowest and highest right, up, towards the viewer; empty: an inverted box."""
+        flat = self.corners.reshape(-1, 3)
+        if not len(flat):
+            return np.full(3, np.inf), np.full(3, -np.inf)
+        return flat.min(axis=0), flat.max(axis=0)
+
+
+def facing(way: Direction, vertices: Array, faces: Ints, two_sided: bool = False) -> Facing:
+    """Turn a mesh to the viewer; of closed ones the faces turned away are left out.
+
+    Args:
+        two_sided: an open skin, seen from both sides.
+    """
+    corners = (vertices @ way.rows.T)[faces]
+    normal = np.cross(corners[:, 1] - corners[:, 0], corners[:, 2] - corners[:, 0])
+    towards = np.abs(normal[:, 2]) if two_sided else normal[:, 2]
+    kept = towards > LEAST_FACING * np.linalg.norm(normal, axis=1)
+    corners, normal = corners[kept], normal[kept]
+    unit = normal / np.linalg.norm(normal, axis=1)[:, None]
+    unit = unit * np.where(unit[:, 2] < 0, -1, 1)[:, None]
+    return Facing(corners, np.clip(0.45 + 0.55 * (unit @ ABOVE_LEFT), 0, 1))
 
 
 @dataclass(eq=False)
@@ -62,10 +77,10 @@ class Scene:
     """What is in front at each pixel.
 
     Attributes:
+        centre: what stands in the middle of the picture, in the viewer's axes.
         owner: number of the thing seen, -1 for none; `shade` 0 to 1 its light.
     """
 
-    way: Direction
     width: int
     height: int
     pixels_per_mm: float
@@ -79,37 +94,28 @@ class Scene:
         self.owner = np.full(self.width * self.height, -1, np.int32)
         self.shade = np.ones(self.width * self.height, np.float32)
 
-    def project(self, points: Array) -> Array:
-        """Points (n, 3) of the aircraft to (n, 3): pixel x, pixel y, depth in pixels."""
-        seen = (np.atleast_2d(points) - self.centre) @ self.way.rows.T * self.pixels_per_mm
-        return np.column_stack(
-            [seen[:, 0] + self.width / 2, self.height / 2 - seen[:, 1], -seen[:, 2]]
-        )
+    def holds(self, seen: Facing) -> bool:
+        """Whether any of it may lie in the picture."""
+        half = np.array([self.width, self.height]) / 2 / self.pixels_per_mm
+        low, high = (b[:2] - self.centre[:2] for b in seen.bounds)
+        return bool((high > -half).all() and (low < half).all())
 
-    def add(self, batch: Batch) -> None:
-        """Draw a batch of meshes; of closed ones only the faces turned to the viewer."""
-        corners = self.project(batch.vertices)[batch.faces]
-        a, b, c = corners[:, 0], corners[:, 1], corners[:, 2]
-        # In pixels y runs down and depth runs away, so that the handedness is kept.
-        facing = (c[:, 0] - a[:, 0]) * (b[:, 1] - a[:, 1])
-        facing -= (b[:, 0] - a[:, 0]) * (c[:, 1] - a[:, 1])
-        seen = np.where(batch.two_sided, np.abs(facing), facing) > 1e-7
-        across, down = corners[:, :, 0], corners[:, :, 1]
-        seen &= (across.max(axis=1) > 0) & (across.min(axis=1) < self.width)
-        seen &= (down.max(axis=1) > 0) & (down.min(axis=1) < self.height)
-        if not seen.any():
+    def add(self, things: Sequence[tuple[int, Facing]], nearer_px: float = 0.0) -> None:
+        """Draw things with their owners; `nearer_px` draws them before what they touch."""
+        things = [(owner, seen) for owner, seen in things if self.holds(seen)]
+        if not things:
             return
-        corners, two_sided = corners[seen], batch.two_sided[seen]
-        normal = np.cross(corners[:, 1] - corners[:, 0], corners[:, 2] - corners[:, 0])
-        unit = normal / np.linalg.norm(normal, axis=1)[:, None]
-        unit = unit * np.where(unit[:, 2] > 0, -1, 1)[:, None]
-        light = np.clip(0.45 + 0.55 * (unit * (1, -1, -1) @ ABOVE_LEFT), 0, 1)
-        face, index, depth = _filled(corners, normal, self.width, self.height)
-        depth = depth - np.where(two_sided, SKIN_NEARER_PX, 0.0)[face]
+        sizes = [len(seen.light) for _, seen in things]
+        owners = np.repeat([owner for owner, _ in things], sizes)
+        light = np.concatenate([seen.light for _, seen in things])
+        corners = np.concatenate([seen.corners for _, seen in things]) - self.centre
+        corners *= self.pixels_per_mm * np.array([1.0, -1.0, -1.0])
+        corners += np.array([self.width / 2, self.height / 2, -nearer_px])
+        face, index, depth = _filled(corners, self.width, self.height)
         before = self.depth[index]
         np.minimum.at(self.depth, index, depth)
         front = (depth <= self.depth[index]) & (depth < before)
-        self.owner[index[front]] = batch.owner[seen][face[front]]
+        self.owner[index[front]] = owners[face[front]]
         self.shade[index[front]] = light[face[front]]
 
     def copy(self) -> Scene:
@@ -152,24 +158,31 @@ _ALL, _FIRST, _LAST = slice(None), slice(0, -1), slice(1, None)
 _NEIGHBOURS = (((_ALL, _FIRST), (_ALL, _LAST)), ((_FIRST, _ALL), (_LAST, _ALL)))
 
 
-def _filled(
-    corners: Array, normal: Array, width: int, height: int
-) -> tuple[Ints, Ints, Array]:
+def _filled(corners: Array, width: int, height: int) -> tuple[Ints, Ints, Array]:
     """Every pixel centre inside each triangle: (triangle, pixel index, depth), row by row."""
     y = corners[:, :, 1]
-    first = np.clip(np.ceil(y.min(axis=1) - 0.5), 0, height).astype(np.int64)
-    last = np.clip(np.floor(y.max(axis=1) - 0.5), -1, height - 1).astype(np.int64)
-    tri, row = _runs(first, last)
-    left, right = _row_ends(corners[tri], np.asarray(row + 0.5, np.float64))
-    start = np.clip(np.ceil(left - 0.5), 0, width).astype(np.int64)
-    end = np.clip(np.floor(right - 0.5), -1, width - 1).astype(np.int64)
+    first, last = _between(y.min(axis=1), y.max(axis=1), height)
+    some = np.nonzero(last >= first)[0]
+    which, row = _runs(first[some], last[some])
+    tri = some[which]
+    start, end = _between(*_row_ends(corners, tri, np.asarray(row + 0.5, float)), width)
     line, column = _runs(start, end)
-    tri, row = tri[line], row[line]
     # Depth on the triangle's plane: at the first corner, and its fall to the right and down.
+    a, ab, ac = corners[some, 0], *(corners[some, k] - corners[some, 0] for k in (1, 2))
+    normal = np.cross(ab, ac)
     fall = -normal[:, :2] / normal[:, 2:]
-    level = corners[:, 0, 2] - (fall * corners[:, 0, :2]).sum(axis=1)
-    depth = level[tri] + fall[tri, 0] * (column + 0.5) + fall[tri, 1] * (row + 0.5)
-    return tri, row * width + column, np.asarray(depth, np.float64)
+    level = a[:, 2] - (fall * a[:, :2]).sum(axis=1)
+    which, row = which[line], row[line]
+    depth = level[which] + fall[which, 0] * (column + 0.5) + fall[which, 1] * (row + 0.5)
+    return some[which], row * width + column, depth
+
+
+def _between(low: Array, high: Array, most: int) -> tuple[Ints, Ints]:
+    """First and last whole number whose middle lies between low and high, within the picture."""
+    return (
+        np.clip(np.ceil(low - 0.5), 0, most).astype(np.int64),
+        np.clip(np.floor(high - 0.5), -1, most - 1).astype(np.int64),
+    )
 
 
 def _runs(first: Ints, last: Ints) -> tuple[Ints, Ints]:
@@ -180,16 +193,27 @@ def _runs(first: Ints, last: Ints) -> tuple[Ints, Ints]:
     return which, first[which] + offset
 
 
-def _row_ends(corners: Array, y: Array) -> tuple[Array, Array]:
-    """Where a row's middle line enters and leaves each triangle."""
-    left, right = np.full(len(y), np.inf), np.full(len(y), -np.inf)
-    for i, j in ((0, 1), (1, 2), (2, 0)):
-        a, b = corners[:, i], corners[:, j]
-        rise = b[:, 1] - a[:, 1]
-        flat = np.abs(rise) < 1e-12
-        t = (y - a[:, 1]) / np.where(flat, 1.0, rise)
-        inside = ~flat & (t >= 0) & (t <= 1)
-        x = a[:, 0] + t * (b[:, 0] - a[:, 0])
-        left = np.where(inside, np.minimum(left, x), left)
-        right = np.where(inside, np.maximum(right, x), right)
-    return np.where(np.isinf(left), 0, left), np.where(np.isinf(right), -1, right)
+def _row_ends(corners: Array, tri: Ints, y: Array) -> tuple[Array, Array]:
+    """Where a row's middle line enters and leaves its triangle: the corners sorted downwards.
+
+    The long edge runs from the top corner to the bottom one, the other side over the middle one.
+    """
+    order = np.argsort(corners[:, :, 1], axis=1, kind="stable")
+    top, middle, bottom = (
+        np.take_along_axis(corners, order[:, k, None, None], axis=1)[:, 0, :2] for k in range(3)
+    )
+    long, upper, lower = _lean(top, bottom), _lean(top, middle), _lean(middle, bottom)
+    one = top[tri, 0] + long[tri] * (y - top[tri, 1])
+    below = y > middle[tri, 1]
+    start = np.where(below, middle[tri, 1], top[tri, 1])
+    other = np.where(below, middle[tri, 0], top[tri, 0])
+    other = other + np.where(below, lower[tri], upper[tri]) * (y - start)
+    return np.minimum(one, other), np.maximum(one, other)
+
+
+def _lean(above: Array, below: Array) -> Array:
+    """Run of an edge for each pixel down; 0 for a level one, which no row's middle crosses."""
+    rise = below[:, 1] - above[:, 1]
+    level = rise < 1e-12
+    run = np.where(level, 0.0, below[:, 0] - above[:, 0])
+    return np.asarray(run / np.where(level, 1.0, rise), np.float64)

@@ -13,8 +13,7 @@ from reportlab.lib.units import mm
 from reportlab.lib.utils import ImageReader
 
 from buildgen.packet.pen import SMALL_PT, Pen, Picture, text_width_mm
-from buildgen.packet.render import Batch, Ints, Scene, isometric
-from buildgen.packet.view import Direction
+from buildgen.packet.render import Facing, Ints, Scene, facing, isometric
 from buildgen.part import Cover, Part
 from buildgen.solid import Array, Placed, Surface, mesh, triangles
 
@@ -26,6 +25,7 @@ EARLIER: Tone = (0.95, 0.95, 0.95)
 EARLIER_EDGE: Tone = (0.74, 0.75, 0.77)
 PIXELS_PER_MM, OVER = 6.0, 2
 MARGIN, LEVELS, LEAST_PIXELS = 0.06, 48, 30
+SKIN_NEARER_PX = 2.0
 HIDDEN_EDGE: Tone = (0.48, 0.44, 0.38)
 PAPER: Tone = (1.0, 1.0, 1.0)
 EDGE_CODE = 3 * LEVELS
@@ -61,11 +61,10 @@ def shaded(
     drawn = [p for p in new if part_triangles(p) is not None]
     old = [p for p in earlier if part_triangles(p) is not None]
     held = frame if frame is not None else np.vstack([_mesh(p)[0] for p in drawn])
-    front = _framed(held, isometric(), width_mm, height_mm)
-    front.add(_batch(drawn, 0))
+    front = _framed(held, width_mm, height_mm)
+    _draw(front, drawn, 0)
     whole = front.copy()
-    if old:
-        whole.add(_batch(old, len(drawn)))
+    _draw(whole, old, len(drawn))
     image = ImageReader(_coloured(front, whole, len(drawn), tones))
     labels = _labels(front, drawn, width_mm, height_mm) if label else []
 
@@ -83,10 +82,16 @@ def _mesh(part: Part) -> tuple[Array, Ints]:
     return found
 
 
-def _batch(parts: Sequence[Part], first: int) -> Batch:
-    return Batch.of([
-        (owner, *_mesh(p), isinstance(p.form, Cover)) for owner, p in enumerate(parts, first)
-    ])
+@lru_cache(maxsize=4096)
+def _facing(part: Part) -> Facing:
+    return facing(isometric(), *_mesh(part), isinstance(part.form, Cover))
+
+
+def _draw(scene: Scene, parts: Sequence[Part], first: int) -> None:
+    """Closed parts, then skins a little nearer than the frame that they touch."""
+    numbered = list(enumerate(parts, first))
+    scene.add([(n, _facing(p)) for n, p in numbered if not isinstance(p.form, Cover)])
+    scene.add([(n, _facing(p)) for n, p in numbered if isinstance(p.form, Cover)], SKIN_NEARER_PX)
 
 
 def _coloured(
@@ -123,14 +128,14 @@ def _ramp(tone: Sequence[float], depth: float) -> Array:
     return np.asarray(light[:, None] * np.array(tone) * 255)
 
 
-def _framed(points: Array, way: Direction, width_mm: float, height_mm: float) -> Scene:
+def _framed(points: Array, width_mm: float, height_mm: float) -> Scene:
     """A scene whose picture holds the points with a margin."""
-    seen = points @ way.rows.T
+    seen = points @ isometric().rows.T
     low, high = seen.min(axis=0), seen.max(axis=0)
     wide, tall = (int(round(v * PIXELS_PER_MM)) * OVER for v in (width_mm, height_mm))
     size = np.maximum(high - low, 1e-6)
     scale = (1 - 2 * MARGIN) * min(wide / size[0], tall / size[1])
-    return Scene(way, wide, tall, float(scale), (low + high) / 2 @ way.rows)
+    return Scene(wide, tall, float(scale), (low + high) / 2)
 
 
 def _labels(

@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-from functools import partial
-from typing import TYPE_CHECKING, Any
+import math
+from dataclasses import dataclass
+from typing import TYPE_CHECKING
 
 from reportlab.platypus import Flowable, KeepTogether, PageBreak
-from shapely.affinity import rotate, scale, translate
-from shapely.geometry import Polygon
+from shapely.geometry import Point as ShapelyPoint
 
 from buildgen.packet import words
 from buildgen.packet.amounts import fixed, plain, size_with_inches, with_inches
@@ -16,25 +16,28 @@ from buildgen.packet.package import Package
 from buildgen.packet.page import NOTE, WIDTH_MM, Heading, gap, text
 from buildgen.packet.pen import (
     HAIR_PT,
+    HEAVY_PT,
     INK,
-    LINE_PT,
     SMALL_PT,
     SOFT,
     THIN_PT,
     WASH,
     Pen,
     Picture,
+    Point,
     text_width_mm,
 )
 from buildgen.packet.three_view import round_scale
 from buildgen.part import Part, Plate
+from buildgen.sheets.nest_types import NestPlacement, placed
 
 if TYPE_CHECKING:
-    from buildgen.sheets.layout import Sheet
+    from buildgen.sheets.layout import Placement, Sheet
 
-MOST_HIGH_MM = 150.0
-GRAIN_MM = 5.0
-LABEL_PT = 5.0
+MOST_HIGH_MM, ABOVE_MM, BETWEEN_MM = 150.0, 5.0, 4.0
+LABEL_PT, PT_MM = 5.0, 25.4 / 72
+LONG = 4.5
+"""Sheets longer than this times their width are drawn in two strips."""
 
 
 def sheet_pages(package: Package) -> list[Flowable]:
@@ -55,81 +58,109 @@ def _block(package: Package, sheet: Sheet) -> list[Flowable]:
         Heading(f"{sheet.file} · {sheet.material} {with_inches(sheet.thickness_mm)}, "
                 f"{size_with_inches(sheet.width_mm, sheet.height_mm)}", 1),
         sheet_picture(package, sheet),
-        gap(1),
+        gap(2),
         text(words.SHEET_FACTS.format(
             count=len(sheet.placements), mass=fixed(mass), used=fixed(sheet.used_fraction * 100),
             length=fixed(sheet.cut_length_mm / 1000, 2), kerf=plain(sheet.kerf_mm, 3))),
         text(f"{words.ON_SHEET}: {listed}", NOTE),
+        gap(3),
     ]
 
 
-def outline_on_sheet(part: Part, placement: Any) -> Polygon:
-    """A plate's outline where it lies: turned over, turned, then moved."""
-    assert isinstance(part.form, Plate)
-    flat = part.form.shape2d
-    if placement.flipped:
-        flat = scale(flat, -1, 1, origin=(0, 0))
-    turned = rotate(flat, placement.rotation_deg, origin=(0, 0))
-    return translate(turned, placement.x_mm, placement.y_mm)
+def laid(placement: Placement) -> NestPlacement:
+    """The placement as the nesting understands it."""
+    return NestPlacement(placement.part, 0, placement.x_mm, placement.y_mm,
+                         placement.rotation_deg, placement.flipped)
 
 
 def sheet_picture(package: Package, sheet: Sheet) -> Picture:
-    """The sheet with its longer side across the page where that shows it larger."""
-    upright = (sheet.width_mm, sheet.height_mm)
-    turned = upright[::-1]
-    room = (WIDTH_MM - GRAIN_MM - 1, MOST_HIGH_MM)
-    turn = round_scale(room, turned) < round_scale(room, upright)
-    size = turned if turn else upright
-    n = round_scale(room, size)
-    return Picture(WIDTH_MM, size[1] / n + 3, partial(_paint, package, sheet, n, turn))
+    """The sheet to a plain scale; a long one in two strips, so that it shows larger."""
+    strips = 2 if sheet.width_mm > LONG * sheet.height_mm else 1
+    long = sheet.width_mm / strips
+    n = round_scale((WIDTH_MM, MOST_HIGH_MM), (long, sheet.height_mm))
+    high = sheet.height_mm / n
+    whole = strips * high + (strips - 1) * BETWEEN_MM + ABOVE_MM
+
+    def paint(pen: Pen) -> None:
+        for strip in range(strips):
+            foot = whole - ABOVE_MM - (strip + 1) * high - strip * BETWEEN_MM
+            inner = pen.scaled(1 / n, (-strip * long / n, foot))
+            _strip(package, sheet, n, (strip * long, (strip + 1) * long), inner)
+        _head(pen, sheet, n, long / n, whole)
+
+    return Picture(WIDTH_MM, whole, paint)
 
 
-def _paint(package: Package, sheet: Sheet, n: float, turn: bool, pen: Pen) -> None:
-    def seen(outline: Polygon) -> Polygon:
-        """Turned a quarter to the right where the sheet is drawn lying."""
-        if not turn:
-            return outline
-        return translate(rotate(outline, -90, origin=(0, 0)), 0, sheet.width_mm)
+def _strip(
+    package: Package, sheet: Sheet, n: float, ends: tuple[float, float], pen: Pen
+) -> None:
+    """What lies between two x of the sheet; the pen draws in the sheet's mm."""
+    pen.canvas.saveState()
+    pen.clip((ends[0] - n * 0.3, -n * 0.3), (ends[1] + n * 0.3, sheet.height_mm + n * 0.3))
+    pen.box((0, 0), (sheet.width_mm, sheet.height_mm), THIN_PT, SOFT)
+    for at in sheet.placements:
+        part = package.kit.by_id[at.part]
+        assert isinstance(part.form, Plate)
+        outline = placed(part.form.shape2d, laid(at))
+        if outline.bounds[2] > ends[0] and outline.bounds[0] < ends[1]:
+            pen.shape(outline, HAIR_PT * 1.4, INK, WASH)
+    pen.canvas.restoreState()
+    for x in ends:
+        if 0 < x < sheet.width_mm:
+            pen.line([(x, -2 * n), (x, sheet.height_mm + 2 * n)], HAIR_PT, INK, dash=(3, 1.5))
+    for number, at in enumerate(sheet.placements, start=1):
+        label = _label(package.kit.by_id[at.part], at, str(number), n)
+        if ends[0] <= label.at[0] < ends[1]:
+            pen.text(label.at, label.words, label.size_pt, "middle", turn_deg=label.turn_deg)
+    if ends[0] == 0:
+        pen.line([(0, 3 * n), (0, 0), (3 * n, 0)], HEAVY_PT)
 
-    size = (sheet.height_mm, sheet.width_mm) if turn else (sheet.width_mm, sheet.height_mm)
-    inner = pen.scaled(1 / n, (GRAIN_MM, 1))
-    inner.box((0, 0), size, THIN_PT, SOFT)
-    for number, placement in enumerate(sheet.placements, start=1):
-        outline = seen(outline_on_sheet(package.kit.by_id[placement.part], placement))
-        inner.shape(outline, HAIR_PT * 1.4, INK, WASH)
-        _label(inner, outline, placement.part, str(number), n)
-    _grain(pen, size[0] / n, size[1] / n, along_x=size[0] >= size[1])
-    corner = (GRAIN_MM, 1 + (size[1] / n if turn else 0))
-    down = -1 if turn else 1
-    pen.line([(corner[0], corner[1] + 3 * down), corner, (corner[0] + 3, corner[1])], LINE_PT)
-    pen.text((WIDTH_MM, size[1] / n + 1.8), words.SCALE.format(scale=plain(n)), SMALL_PT - 1,
-             "right", ink=SOFT)
+
+@dataclass(frozen=True)
+class Label:
+    """What is written on a part, where, in the sheet's mm."""
+
+    words: str
+    at: Point
+    size_pt: float
+    turn_deg: float = 0.0
 
 
-def _label(pen: Pen, outline: Polygon, name: str, number: str, n: float) -> None:
-    """The id inside the part where it fits, lying or standing; else its number."""
+def _label(part: Part, at: Placement, number: str, n: float) -> Label:
+    """The id where it is engraved; else inside the part where it fits, or the part's number."""
+    assert isinstance(part.form, Plate)
+    for mark in part.form.marks:
+        if mark.text == part.id:
+            spot = placed(ShapelyPoint(mark.at), laid(at))
+            turn = (mark.angle_deg + at.rotation_deg + 90) % 180 - 90
+            size = min(LABEL_PT + 1, max(LABEL_PT - 1, mark.height_mm / n / PT_MM / 0.73))
+            return _middled(part.id, (spot.x, spot.y), size, turn, n)
+    outline = placed(part.form.shape2d, laid(at))
     low_x, low_y, high_x, high_y = outline.bounds
-    at = outline.representative_point()
+    spot = outline.representative_point()
     width, height = (high_x - low_x) / n, (high_y - low_y) / n
-    for words_, size in ((name, LABEL_PT), (name, LABEL_PT - 1), (number, LABEL_PT - 1)):
-        long = text_width_mm(words_, size) + 1
-        if long <= width and size * 0.3 <= height:
-            pen.text((at.x, at.y - size * 0.12 * n), words_, size, "middle")
-            return
-        if long <= height and size * 0.3 <= width:
-            pen.text((at.x + size * 0.12 * n, at.y), words_, size, "middle", turn_deg=90)
-            return
-    pen.text((at.x, at.y - 0.4 * n), number, LABEL_PT - 1, "middle", halo=True)
+    for words_ in (part.id, number):
+        long = text_width_mm(words_, LABEL_PT) + 1
+        if long <= width:
+            return _middled(words_, (spot.x, spot.y), LABEL_PT, 0.0, n)
+        if long <= height:
+            return _middled(words_, (spot.x, spot.y), LABEL_PT, 90.0, n)
+    return _middled(number, (spot.x, spot.y), LABEL_PT - 1, 0.0, n)
 
 
-def _grain(pen: Pen, width: float, height: float, along_x: bool) -> None:
-    """An arrow beside the sheet along its grain, which runs with the longer side."""
-    if along_x:
-        middle = GRAIN_MM + width / 2
-        pen.arrow((middle - 10, height + 2.2), (middle + 10, height + 2.2), HAIR_PT, SOFT,
-                  both=True)
-        pen.text((middle + 11.5, height + 1.5), words.GRAIN, SMALL_PT - 1, ink=SOFT)
-        return
-    middle = 1 + height / 2
-    pen.arrow((2, middle - 10), (2, middle + 10), HAIR_PT, SOFT, both=True)
-    pen.text((2.8, middle + 11.5), words.GRAIN, SMALL_PT - 1, ink=SOFT, turn_deg=90)
+def _middled(words_: str, middle: Point, size_pt: float, turn_deg: float, n: float) -> Label:
+    """Its base line half a capital below the middle."""
+    down = 0.365 * size_pt * PT_MM * n
+    turn = math.radians(turn_deg)
+    x, y = middle
+    return Label(words_, (x + down * math.sin(turn), y - down * math.cos(turn)), size_pt, turn_deg)
+
+
+def _head(pen: Pen, sheet: Sheet, n: float, width: float, top: float) -> None:
+    """Above the sheet: grain along its longer side, and the scale."""
+    y = top - ABOVE_MM + 1.6
+    pen.text((WIDTH_MM, y - 0.5), words.SCALE.format(scale=plain(n)), SMALL_PT - 1, "right",
+             ink=SOFT)
+    if sheet.grain:
+        pen.arrow((0, y), (20, y), HAIR_PT, SOFT, both=True)
+        pen.text((21.5, y - 0.7), words.GRAIN, SMALL_PT - 1, ink=SOFT)

@@ -3,7 +3,6 @@
 from __future__ import annotations
 
 from functools import partial
-from typing import TYPE_CHECKING
 
 from reportlab.platypus import Flowable, KeepTogether, PageBreak
 
@@ -22,9 +21,7 @@ from buildgen.packet.pen import (
     Picture,
     text_width_mm,
 )
-
-if TYPE_CHECKING:
-    from buildgen.sheets.sticks import StickPlan
+from buildgen.sheets.sticks import SAW_MM, StickPlan
 
 ROW_MM, BAR_MM, NUMBER_MM = 9.5, 3.4, 7.0
 
@@ -33,8 +30,8 @@ def stick_pages(package: Package) -> list[Flowable]:
     """A block for each material and section."""
     if not package.stick_plans:
         return []
-    story: list[Flowable] = [PageBreak(), Heading(words.STICKS), text(words.STICK_NOTE, NOTE),
-                             gap(2)]
+    note = words.STICK_NOTE.format(saw=plain(SAW_MM))
+    story: list[Flowable] = [PageBreak(), Heading(words.STICKS), text(note, NOTE), gap(2)]
     for plan in package.stick_plans:
         high = ROW_MM * len(plan.bars)
         story.append(KeepTogether([
@@ -56,7 +53,7 @@ def _paint(plan: StickPlan, high: float, pen: Pen) -> None:
             end = x + piece.length_mm * per_mm
             pen.box((x, y), (end, y + BAR_MM), THIN_PT, INK, WASH)
             _say(pen, x, end, y, piece.part, fixed(piece.length_mm), low=index % 2 == 1)
-            x = end
+            x = end + SAW_MM * per_mm
         _left_over(pen, x, WIDTH_MM, y, bar.left_mm)
 
 

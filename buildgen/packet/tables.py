@@ -18,9 +18,9 @@ BILL_COLUMNS = (
     Column(words.MASS_G, 17, True), Column(words.ID, 26),
 )
 INDEX_COLUMNS = (
-    Column(words.ID, 19), Column(words.NAME, 44), Column(words.MATERIAL, 30),
-    Column(words.PROCESS, 18), Column(words.MASS_G, 13, True), Column(words.SHEET_OF, 29),
-    Column(words.STEP_COLUMN, 21),
+    Column(words.ID, 19), Column(words.NAME, 54), Column(words.MATERIAL, 27),
+    Column(words.PROCESS, 15), Column(words.MASS_G, 17, True), Column(words.SHEET_OF, 33),
+    Column(words.STEP_COLUMN, 9, True),
 )
 NOTES = {"make": "", "stock": words.STOCK_NOTE, "buy": words.BUY_NOTE}
 
@@ -50,7 +50,7 @@ def index_pages(package: Package) -> list[Flowable]:
     numbers = {step: n for n, step in enumerate(package.kit.steps, start=1)}
     rows = [
         [p.id, p.name, p.material, words.PROCESSES[p.process], grams(p.mass_g),
-         where_from(package, p), f"{numbers[p.step]} {p.step}"]
+         "" if isinstance(p.form, Bought) else where_from(package, p), str(numbers[p.step])]
         for p in sorted(package.kit.parts, key=lambda p: natural(p.id))
     ]
     return [PageBreak(), Heading(words.INDEX), table(INDEX_COLUMNS, rows)]

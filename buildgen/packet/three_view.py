@@ -21,12 +21,13 @@ from buildgen.packet.pen import (
     Pen,
     Picture,
     Point,
+    text_width_mm,
 )
 from buildgen.packet.view import FROM_ABOVE, FROM_FRONT, FROM_LEFT, View, eased, view_of
-from buildgen.part import Cover, Kit
+from buildgen.part import Bought, Cover, Kit
 
-SCALES = (1, 2, 2.5, 4, 5, 6, 7.5, 8, 10, 12, 12.5, 15, 20, 25, 30, 40, 50, 60, 80, 100)
-BETWEEN_MM, LABEL_MM, DIM_MM = 5.0, 5.0, 8.0
+SCALES = (1, 2, 2.5, 3, 4, 5, 6, 7.5, 8, 10, 12, 12.5, 15, 20, 25, 30, 40, 50, 60, 80, 100)
+BETWEEN_MM, LABEL_MM, DIM_MM, KEY_MM = 5.0, 5.0, 8.0, 4.0
 
 
 def round_scale(room_mm: Point, size_mm: Point) -> float:
@@ -42,7 +43,7 @@ def three_view(kit: Kit, balance: Balance, width_mm: float, height_mm: float) ->
     views = [view_of(kit, way) for way in (FROM_ABOVE, FROM_FRONT, FROM_LEFT)]
     heights = [v.size_mm[1] for v in views]
     widest = max(v.size_mm[0] for v in views)
-    taken = 3 * LABEL_MM + 2 * BETWEEN_MM + 2 * DIM_MM
+    taken = 3 * LABEL_MM + 2 * BETWEEN_MM + 2 * DIM_MM + KEY_MM
     n = round_scale((width_mm - 2 * DIM_MM - 6, height_mm - taken), (widest, sum(heights)))
     used = sum(heights) / n + taken
     return Picture(width_mm, used, partial(_paint, views, balance, n, width_mm, used))
@@ -59,7 +60,7 @@ def _paint(
         low_x, _, high_x, high_y = view.bounds
         at = (width_mm / 2 - (low_x + high_x) / 2 / n, top - high_y / n)
         inner = pen.scaled(1 / n, at)
-        draw_view(inner, view, n)
+        (draw_through if index == 0 else draw_solid)(inner, view, n)
         _marks(inner, view, balance, n, side_on=index == 2)
         top -= view.size_mm[1] / n
         if index == 0:
@@ -71,16 +72,24 @@ def _paint(
         top -= BETWEEN_MM + (DIM_MM if index == 0 else 0)
     pen.text((width_mm, height_mm - 3), words.SCALE.format(scale=plain(n)), SMALL_PT, "right",
              ink=SOFT)
-    _key(pen, width_mm, height_mm - 8)
+    _key(pen, width_mm)
 
 
-def draw_view(pen: Pen, view: View, n: float) -> None:
-    """Every part thin, the whole heavier; coverings are the outline only."""
+def draw_through(pen: Pen, view: View, n: float) -> None:
+    """The frame as if the covering were glass: every part thin, the whole heavier."""
     for part, shadow in view.shadows:
         if not isinstance(part.form, Cover):
-            simple = eased(shadow, 0.06 * n)
-            if not simple.is_empty:
-                pen.shape(simple, HAIR_PT, SOFT)
+            pen.shape(eased(shadow, 0.06 * n), HAIR_PT, SOFT)
+    pen.shape(eased(view.outline, 0.03 * n), LINE_PT, INK)
+
+
+def draw_solid(pen: Pen, view: View, n: float) -> None:
+    """Each part hides what lies behind it; hidden things on board are dashed."""
+    for _, shadow in view.from_behind:
+        pen.shape(eased(shadow, 0.05 * n), HAIR_PT, SOFT, WHITE)
+    for part, shadow in view.shadows:
+        if isinstance(part.form, Bought):
+            pen.shape(eased(shadow, 0.05 * n), HAIR_PT, SOFT, dash=(2, 1.2))
     pen.shape(eased(view.outline, 0.03 * n), LINE_PT, INK)
 
 
@@ -136,19 +145,19 @@ def diamond(pen: Pen, at: np.ndarray | Point, n: float, half_mm: float = 1.4) ->
     pen.line([(x - d, y), (x, y + d), (x + d, y), (x, y - d)], LINE_PT, INK, closed=True)
 
 
-def _key(pen: Pen, right_mm: float, y: float) -> None:
-    """What the marks mean, under the scale."""
-    rows = ((words.CG_KEY, "cg"), (words.RANGE_KEY, "range"), (words.NEUTRAL_KEY, "np"))
-    for label, kind in rows:
-        pen.text((right_mm - 5, y - 0.9), label, SMALL_PT - 0.5, "right", ink=SOFT)
-        at = (right_mm - 2, y)
+def _key(pen: Pen, right_mm: float) -> None:
+    """What the marks mean, in a row at the foot."""
+    x = right_mm
+    for label, kind in ((words.NEUTRAL_KEY, "np"), (words.RANGE_KEY, "range"),
+                        (words.CG_KEY, "cg")):
+        pen.text((x, 0.6), label, SMALL_PT - 0.5, "right", ink=SOFT)
+        x -= text_width_mm(label, SMALL_PT - 0.5) + 3.0
+        at = (x, 1.5)
         if kind == "cg":
             cg_mark(pen, at, 1.3)
         elif kind == "np":
             diamond(pen, at, 1, 1.2)
         else:
-            for x in (right_mm - 3.2, right_mm - 0.8):
-                pen.line([(x, y - 1.3), (x, y + 1.3)], HEAVY_PT, ACCENT)
-        y -= 4.2
-
-
+            for edge in (x - 1.2, x + 1.2):
+                pen.line([(edge, 0.2), (edge, 2.8)], HEAVY_PT, ACCENT)
+        x -= 6.0

@@ -6,6 +6,7 @@ Views are given by two rows: where the picture's right and up lie in the aircraf
 from __future__ import annotations
 
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 import shapely
@@ -38,6 +39,7 @@ FROM_FRONT = Direction((0, -1, 0), (0, 0, 1))
 FROM_LEFT = Direction((1, 0, 0), (0, 0, 1))
 
 
+@lru_cache(maxsize=8192)
 def silhouette(part: Part, way: Direction) -> MultiPolygon:
     """The part's shadow in the picture's mm; empty for what has no shape."""
     if part.shape is None:
@@ -82,13 +84,30 @@ class View:
 
     @property
     def bounds(self) -> tuple[float, float, float, float]:
-        low_x, low_y, high_x, high_y = self.outline.bounds
-        return low_x, low_y, high_x, high_y
+        boxes = np.array([shadow.bounds for _, shadow in self.shadows])
+        low_x, low_y = boxes[:, :2].min(axis=0)
+        high_x, high_y = boxes[:, 2:].max(axis=0)
+        return float(low_x), float(low_y), float(high_x), float(high_y)
 
     @property
     def size_mm(self) -> tuple[float, float]:
-        low_x, low_y, high_x, high_y = self.outline.bounds
+        low_x, low_y, high_x, high_y = self.bounds
         return high_x - low_x, high_y - low_y
+
+    @property
+    def from_behind(self) -> list[tuple[Part, MultiPolygon]]:
+        """The farthest first: drawn in this order each part hides what lies behind it."""
+        return sorted(self.shadows, key=lambda s: nearness_mm(s[0], self.way))
+
+
+def nearness_mm(part: Part, way: Direction) -> float:
+    """How far the part's nearest point lies towards the viewer."""
+    assert part.shape is not None
+    if isinstance(part.form, Cover):
+        assert isinstance(part.shape, Placed) and isinstance(part.shape.shape, Surface)
+        return float((part.shape.pose(part.shape.shape.vertices) @ way.rows[2]).max())
+    low, high = np.array(mesh(part.shape).bounding_box()).reshape(2, 3)
+    return float(np.maximum(low * way.rows[2], high * way.rows[2]).sum())
 
 
 def view_of(kit: Kit, way: Direction, tolerance_mm: float = 0.3) -> View:

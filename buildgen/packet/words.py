@@ -88,8 +88,8 @@ GRAIN = "grain"
 ON_SHEET = "Parts on this sheet, by their numbers"
 STICKS = "Sticks and tubes"
 STICK_NOTE = (
-    "Each bar is one length of stock, drawn to scale in its row; cut from the left. The hatched "
-    "end is left over."
+    "Each bar is one length of stock, drawn to scale in its row; cut from the left, with {saw} mm "
+    "for each cut. The hatched end is left over. Lengths in mm."
 )
 LEFT_OVER = "left"
 PRINTS = "Printed parts"
@@ -113,7 +113,7 @@ ID, NAME, PROCESS, STEP_COLUMN = "Id", "Name", "Made by", "Step"
 INDEX = "Parts index"
 PROCESSES = {
     "cut": "cut",
-    "stick": "cut to length",
+    "stick": "sawn",
     "print": "printed",
     "cover": "covered",
     "bought": "bought",

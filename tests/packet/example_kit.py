@@ -31,6 +31,7 @@ from buildgen.part import (
     Stick,
     Title,
 )
+from buildgen.sheets.sticks import StickBar, StickPiece, StickPlan
 from buildgen.solid import Box, Difference, Placed, Pose, Rod, Surface
 
 CHORD, HALF, THICK = 180.0, 500.0, 0.11
@@ -178,7 +179,9 @@ def checks() -> tuple[Check, ...]:
 
 
 @dataclass(frozen=True)
-class Lying:
+class Placement:
+    """As in the layout of sheets."""
+
     part: str
     x_mm: float
     y_mm: float
@@ -188,56 +191,39 @@ class Lying:
 
 @dataclass(frozen=True)
 class LaidSheet:
+    """Stands for a laid out sheet where its figures matter and its cutting does not."""
+
     file: str
     material: str
     thickness_mm: float
     width_mm: float
     height_mm: float
     kerf_mm: float
-    placements: tuple[Lying, ...]
+    grain: bool
+    placements: tuple[Placement, ...]
     parts_area_mm2: float
     used_fraction: float
     cut_length_mm: float
 
 
-@dataclass(frozen=True)
-class Piece:
-    part: str
-    length_mm: float
-
-
-@dataclass(frozen=True)
-class Bar:
-    pieces: tuple[Piece, ...]
-    left_mm: float
-
-
-@dataclass(frozen=True)
-class Plan:
-    material: str
-    section: str
-    stock_length_mm: float
-    bars: tuple[Bar, ...]
-
-
-def lay(kit_: Kit, material: str, thickness: float, size: tuple[float, float], gap: float,
-        turn: float = 0.0) -> LaidSheet:
-    """Parts of one material one above the other (fits by the choice of sizes)."""
-    placements, y, area, length = [], 5.0, 0.0, 0.0
-    for part in kit_.of("cut"):
+def lay(kit_: Kit, material: str, thickness: float, size: tuple[float, float],
+        columns: int = 1) -> LaidSheet:
+    """Parts of one material in columns, one above the other (fits by the choice of sizes)."""
+    placements: list[Placement] = []
+    area = length = 0.0
+    mine = [p for p in kit_.of("cut") if p.material == material]
+    y = 5.0
+    for number, part in enumerate(mine):
         assert isinstance(part.form, Plate)
-        if part.material != material:
-            continue
-        low_x, low_y, high_x, high_y = part.form.shape2d.bounds
-        if turn:
-            placements.append(Lying(part.id, y - low_y * -1 + (high_y), 5.0 - low_x, turn))
-            y += high_y - low_y + gap
-        else:
-            placements.append(Lying(part.id, 5.0 - low_x, y - low_y, 0.0))
-            y += high_y - low_y + gap
+        low_x, low_y, _, high_y = part.form.shape2d.bounds
+        column = number % columns
+        x = 5.0 + column * (size[0] - 5.0) / columns
+        placements.append(Placement(part.id, x - low_x, y - low_y, 0.0))
+        if column == columns - 1:
+            y += high_y - low_y + 3.0
         area += part.form.area_mm2
         length += part.form.shape2d.length
-    return LaidSheet(f"{material}-{thickness:g}-01", material, thickness, *size, 0.16,
+    return LaidSheet(f"{material}-{thickness:g}-01", material, thickness, *size, 0.16, True,
                      tuple(placements), area, area / (size[0] * size[1]), length)
 
 
@@ -251,12 +237,12 @@ def package() -> Package:
                     propeller=Propeller(diameter_mm=250.0, pitch_mm=120.0)),
     )
     sheets = (
-        lay(kit_, "balsa", 2.0, (200.0, 300.0), 3.0),
-        lay(kit_, "lite-ply", 3.0, (760.0, 200.0), 3.0),
-        lay(kit_, "balsa-light", 4.0, (180.0, 520.0), 3.0),
+        lay(kit_, "balsa", 2.0, (1000.0, 100.0), 5),
+        lay(kit_, "lite-ply", 3.0, (760.0, 200.0)),
+        lay(kit_, "balsa-light", 4.0, (560.0, 520.0)),
     )
-    plan = Plan("carbon-tube", "8 x 6 tube", 1000.0, (
-        Bar((Piece("SP1", 500.0), Piece("SP2", 498.0)), 2.0),
+    plan = StickPlan("carbon-tube", "8 x 6 tube", 1200.0, (
+        StickBar((StickPiece("SP1", 500.0), StickPiece("SP2", 500.0)), 199.0),
     ))
     return Package(kit_, definition, sheets, (plan,), balance_of(kit_), checks(), (),  # type: ignore[arg-type]
                    SOURCE, "reed-bunting.toml")

@@ -83,7 +83,7 @@ def test_bill_adds_up_pieces_and_shows_inches(package: Package) -> None:
     assert "(0.118 in)" in lines["Sheet, lite-ply 3 mm (0.118 in)"].item
     tube = next(line for line in bill(package) if line.item.startswith("Length, carbon-tube"))
     assert tube.amount == 1
-    assert tube.size == "1000 mm (39.4 in)"
+    assert tube.size == "1200 mm (47.2 in)"
     covering = next(line for line in bill(package) if line.unit == "m²")
     mass = sum(p.mass_g for p in package.kit.of("cover"))
     assert covering.amount == pytest.approx(mass / 60.0, abs=1e-3), "60 g/m2 in the example"
