@@ -2,18 +2,20 @@
 
 from __future__ import annotations
 
-from collections.abc import Sequence
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from functools import cached_property
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 from buildgen.checks.report import WORST_FIRST, Balance, Check
 from buildgen.part import Kit, Part, Plate, Printed
 
 if TYPE_CHECKING:
     from buildgen.design.schema import Definition
+    from buildgen.prints.make import Report
     from buildgen.sheets.layout import Sheet
     from buildgen.sheets.sticks import StickPlan
+
+PRINT_ENDINGS = (".step", ".stl", ".3mf")
 
 
 @dataclass(frozen=True, eq=False)
@@ -32,10 +34,9 @@ class Package:
     stick_plans: tuple[StickPlan, ...]
     balance: Balance
     checks: tuple[Check, ...] = ()
-    print_reports: tuple[Any, ...] = ()
+    print_reports: tuple[Report, ...] = ()
     source_text: str = ""
     source_name: str = ""
-    print_endings: Sequence[str] = field(default=(".step", ".stl", ".3mf"))
 
     @cached_property
     def sheet_of(self) -> dict[str, Sheet]:
@@ -64,4 +65,12 @@ class Package:
         """File names of a printed part, shared by its twins."""
         if not isinstance(part.form, Printed):
             return ()
-        return tuple(part.files_key + ending for ending in self.print_endings)
+        report = self.report_of.get(part.files_key)
+        if report is not None and report.files:
+            return tuple(report.files)
+        return tuple(part.files_key + ending for ending in PRINT_ENDINGS)
+
+    @cached_property
+    def report_of(self) -> dict[str, Report]:
+        """File stem of a print to what was measured on it."""
+        return {report.key: report for report in self.print_reports}

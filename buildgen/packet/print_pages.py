@@ -15,7 +15,8 @@ from buildgen.packet.package import Package
 from buildgen.packet.page import CELL, NOTE, PLAIN_CELLS, WIDTH_MM, Heading, gap, text
 from buildgen.packet.shaded import part_triangles, shaded
 from buildgen.part import Part, Printed
-from buildgen.solid import Array, Pose
+from buildgen.prints.make import on_bed
+from buildgen.solid import HERE
 
 PER_ROW, PICTURE_MM = 2, (80.0, 52.0)
 TONE = (0.86, 0.87, 0.89)
@@ -40,30 +41,29 @@ def print_pages(package: Package) -> list[Flowable]:
             gap(3), laid]
 
 
-def on_bed(part: Part) -> Pose:
-    """Frame that stands the part as it is printed: its `print_up` upwards."""
+def lying(part: Part) -> Part:
+    """The part as it is printed, standing on the bed."""
     assert isinstance(part.form, Printed)
-    up = np.asarray(part.form.print_up, float)
-    side = np.eye(3)[int(np.argmin(np.abs(up)))]
-    x = np.cross(side, up)
-    return Pose.at((0, 0, 0), x, np.cross(up, x)).inverse
+    turned = on_bed(part.form.shape, part.form.print_up)
+    return replace(part, pose=HERE, form=replace(part.form, shape=turned))
 
 
-def bed_size_mm(part: Part) -> Array:
-    """(3,) room that the part takes on the bed."""
-    found = part_triangles(replace(part, pose=on_bed(part)))
+def bed_size_mm(part: Part) -> tuple[float, ...]:
+    """Room that the part takes on the bed, along x, y and up."""
+    found = part_triangles(lying(part))
     assert found is not None
-    return np.asarray(np.ptp(found[0], axis=0))
+    return tuple(float(v) for v in np.ptp(found[0], axis=0))
 
 
 def _cell(package: Package, key: str, parts: list[Part]) -> list[Flowable]:
-    first = replace(parts[0], pose=on_bed(parts[0]))
-    size = " x ".join(fixed(v) for v in bed_size_mm(first))
-    files = ", ".join(package.print_files(parts[0]))
+    first = parts[0]
+    report = package.report_of.get(key)
+    size = " x ".join(fixed(v) for v in (report.size_mm if report else bed_size_mm(first)))
+    files = ", ".join(package.print_files(first))
     copies = words.PRINT_COPIES.format(count=len(parts), ids=listed([p.id for p in parts], 8))
     return [
-        shaded([first], *PICTURE_MM, tones=(TONE, TONE)),
-        text(f"{key} · {parts[0].name}", CELL),
+        shaded([lying(first)], *PICTURE_MM, tones=(TONE, TONE)),
+        text(f"{key} · {first.name}", CELL),
         text(words.PRINT_FACTS.format(mass=grams(first.mass_g), size=size,
                                       material=first.material), CELL),
         text(copies, CELL),

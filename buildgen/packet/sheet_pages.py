@@ -29,13 +29,16 @@ from buildgen.packet.pen import (
 )
 from buildgen.packet.three_view import round_scale
 from buildgen.part import Part, Plate
+from buildgen.sheets.marks import id_mark
 from buildgen.sheets.nest_types import NestPlacement, placed
 
 if TYPE_CHECKING:
     from buildgen.sheets.layout import Placement, Sheet
 
 MOST_HIGH_MM, ABOVE_MM, BETWEEN_MM = 150.0, 5.0, 4.0
-LABEL_PT, PT_MM = 5.0, 25.4 / 72
+LABEL_PT, LEAST_PT, PT_MM = 5.0, 3.2, 25.4 / 72
+CAPITAL = 0.73
+"""Height of a capital over the size of the letters."""
 LONG = 4.5
 """Sheets longer than this times their width are drawn in two strips."""
 
@@ -109,7 +112,8 @@ def _strip(
         if 0 < x < sheet.width_mm:
             pen.line([(x, -2 * n), (x, sheet.height_mm + 2 * n)], HAIR_PT, INK, dash=(3, 1.5))
     for number, at in enumerate(sheet.placements, start=1):
-        label = _label(package.kit.by_id[at.part], at, str(number), n)
+        label = _label(package.kit.by_id[at.part], at, str(number), n,
+                       package.definition.laser.letter_mm)
         if ends[0] <= label.at[0] < ends[1]:
             pen.text(label.at, label.words, label.size_pt, "middle", turn_deg=label.turn_deg)
     if ends[0] == 0:
@@ -126,15 +130,16 @@ class Label:
     turn_deg: float = 0.0
 
 
-def _label(part: Part, at: Placement, number: str, n: float) -> Label:
+def _label(part: Part, at: Placement, number: str, n: float, letter_mm: float) -> Label:
     """The id where it is engraved; else inside the part where it fits, or the part's number."""
     assert isinstance(part.form, Plate)
-    for mark in part.form.marks:
-        if mark.text == part.id:
-            spot = placed(ShapelyPoint(mark.at), laid(at))
-            turn = (mark.angle_deg + at.rotation_deg + 90) % 180 - 90
-            size = min(LABEL_PT + 1, max(LABEL_PT - 1, mark.height_mm / n / PT_MM / 0.73))
-            return _middled(part.id, (spot.x, spot.y), size, turn, n)
+    marks = [m for m in part.form.marks if m.text == part.id]
+    mark = marks[0] if marks else id_mark(part, letter_mm)
+    if mark is not None:
+        spot = placed(ShapelyPoint(mark.at), laid(at))
+        turn = (mark.angle_deg + at.rotation_deg + 90) % 180 - 90
+        size = min(LABEL_PT + 1, max(LEAST_PT, mark.height_mm / n / PT_MM / CAPITAL))
+        return _middled(part.id, (spot.x, spot.y), size, turn, n)
     outline = placed(part.form.shape2d, laid(at))
     low_x, low_y, high_x, high_y = outline.bounds
     spot = outline.representative_point()
@@ -150,7 +155,7 @@ def _label(part: Part, at: Placement, number: str, n: float) -> Label:
 
 def _middled(words_: str, middle: Point, size_pt: float, turn_deg: float, n: float) -> Label:
     """Its base line half a capital below the middle."""
-    down = 0.365 * size_pt * PT_MM * n
+    down = CAPITAL / 2 * size_pt * PT_MM * n
     turn = math.radians(turn_deg)
     x, y = middle
     return Label(words_, (x + down * math.sin(turn), y - down * math.cos(turn)), size_pt, turn_deg)
