@@ -113,8 +113,8 @@ def mounts(args: argparse.Namespace) -> int:
 def balance(args: argparse.Namespace) -> int:
     """Print weights and balance."""
     made = _build(args)
+    from buildgen.packet.kit_json import balance_json
     from buildgen.terminal import balance_table
-    from buildgen.values import balance_json
 
     print(_json(balance_json(made.balance)) if args.json else balance_table(made))
     return _verdict(made)
@@ -123,8 +123,8 @@ def balance(args: argparse.Namespace) -> int:
 def check(args: argparse.Namespace) -> int:
     """Print every check, worst first."""
     made = _build(args)
+    from buildgen.packet.kit_json import check_json
     from buildgen.terminal import checks_table
-    from buildgen.values import check_json
 
     print(_json([check_json(c) for c in made.checks]) if args.json else checks_table(made))
     return _verdict(made)

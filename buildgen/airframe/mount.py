@@ -40,7 +40,6 @@ from buildgen.solid import (
 
 NOSE_PLAY_MM = 0.25
 """Between the saddle and the wing's nose: covering and glue."""
-OVERLAP_MM = 0.05
 CORNER_STEPS = 10
 
 
@@ -163,7 +162,7 @@ class MountShape:
 
     def _bodies(self) -> tuple[Shape, ...]:
         front, neck, rear = self._rings(0.0)
-        return Ruled(front, neck), Ruled(self._shifted(neck, -OVERLAP_MM), rear)
+        return Ruled(front, neck), Ruled(neck, rear)
 
     def _rings(self, inside: float) -> tuple[tuple[Run, ...], tuple[Run, ...], tuple[Run, ...]]:
         """Outside (inside=0) or cavity rings at the seat, the neck and the rear."""
@@ -181,13 +180,9 @@ class MountShape:
         rear = _rounded(rear_x, wide, tall, 3.0 if not inside else 2.0) + (0, 0, middle)
         return tuple(_runs(points) for points in (front, neck, rear))  # type: ignore[return-value]
 
-    @staticmethod
-    def _shifted(runs: tuple[Run, ...], dx: float) -> tuple[Run, ...]:
-        return tuple(Run(r.points + (dx, 0, 0), r.smooth) for r in runs)
-
     def _tools(self) -> tuple[Shape, ...]:
         front, neck, rear = self._rings(self.wall)
-        cavity = (Ruled(front, neck), Ruled(self._shifted(neck, -OVERLAP_MM), rear))
+        cavity = (Ruled(front, neck), Ruled(neck, rear))
         return (*cavity, self._nose_tool(), *self._sockets(), *self._seat_holes(), *self._locks())
 
     def _nose_tool(self) -> Ruled:

@@ -37,7 +37,10 @@ def sheet_dxf(sheet: Sheet, kit: Kit, laser: Laser) -> str:
         drawing = draw(sheet, kit, laser)
         _fill(document.modelspace(), drawing, laser.dxf == "R12")
         x, y = drawing.outline.max(axis=0)
-        document.modelspace().reset_extents((0, 0, 0), (float(x), float(y) + 5.5, 0))
+        far = (float(x), float(y) + 5.5, 0)
+        # Both: the library copies the layout's extents to the header, but not a corner at (0, 0).
+        document.modelspace().reset_extents((0, 0, 0), far)
+        document.header["$EXTMIN"], document.header["$EXTMAX"] = (0, 0, 0), far
         if laser.dxf != "R12":
             document.header["$MEASUREMENT"] = 1
         stream = io.StringIO()

@@ -1,0 +1,24 @@
+"""The solids' own process: python -m buildgen.prints ROOM FOLDER"""
+
+import pickle
+import sys
+from pathlib import Path
+
+from buildgen.prints.brep import KernelMissing
+from buildgen.prints.make import make
+
+
+def main(room: Path, folder: Path) -> None:
+    """Build every job of the room into the folder; leave the reports, or what went wrong."""
+    jobs = pickle.loads((room / "jobs").read_bytes())
+    built: dict[int, object] = {}
+    result: object
+    try:
+        result = [make(job, folder, built) for job in jobs]
+    except (KernelMissing, ValueError) as error:
+        result = error
+    (room / "result").write_bytes(pickle.dumps(result))
+
+
+if __name__ == "__main__":
+    main(Path(sys.argv[1]), Path(sys.argv[2]))
