@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+import re
+
 MM_PER_INCH = 25.4
 
 
@@ -32,6 +34,16 @@ def size_with_inches(*values_mm: float) -> str:
     metric = " x ".join(plain(v, 1) for v in values_mm)
     inches = " x ".join(plain(v / MM_PER_INCH, 1) for v in values_mm)
     return f"{metric} mm ({inches} in)"
+
+
+def section_with_inches(section: str) -> str:
+    """``8 x 6 mm tube (0.315 x 0.236 in)`` of ``8 x 6 tube``."""
+    found = list(re.finditer(r"[0-9]+(?:\.[0-9]+)?", section))
+    if not found:
+        return section
+    end = found[-1].end()
+    inches = " x ".join(plain(float(f.group()) / MM_PER_INCH, 3) for f in found)
+    return f"{section[:end]} mm{section[end:]} ({inches} in)"
 
 
 def listed(ids: list[str], most: int = 12) -> str:

@@ -8,7 +8,7 @@ from itertools import groupby
 from typing import Literal, TypeAlias
 
 from buildgen.packet import words
-from buildgen.packet.amounts import plain, size_with_inches, with_inches
+from buildgen.packet.amounts import plain, section_with_inches, size_with_inches, with_inches
 from buildgen.packet.kit_json import quantity
 from buildgen.packet.package import Package
 from buildgen.part import Allowance, Bought, Cover, Part, Plate, Printed, Stick
@@ -59,7 +59,7 @@ def part_size(part: Part) -> str:
         case Plate():
             return with_inches(part.form.thickness_mm)
         case Stick():
-            return f"{part.form.section} mm"
+            return section_with_inches(part.form.section)
     return ""
 
 
@@ -113,7 +113,7 @@ def _sheets(package: Package) -> list[Line]:
 
 def _lengths(package: Package) -> list[Line]:
     return [
-        Line("stock", f"{words.STICK_STOCK}, {plan.material} {plan.section} mm",
+        Line("stock", f"{words.STICK_STOCK}, {plan.material} {section_with_inches(plan.section)}",
              size_with_inches(plan.stock_length_mm), len(plan.bars), words.LENGTHS_UNIT, None,
              tuple(piece.part for bar in plan.bars for piece in bar.pieces))
         for plan in package.stick_plans

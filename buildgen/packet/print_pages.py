@@ -18,7 +18,7 @@ from buildgen.part import Part, Printed
 from buildgen.prints.make import on_bed
 from buildgen.solid import HERE
 
-PER_ROW, PICTURE_MM = 2, (80.0, 52.0)
+PER_ROW, WIDE_MM, HIGH_MM = 2, 80.0, (52.0, 52.0)
 TONE = (0.86, 0.87, 0.89)
 
 
@@ -62,7 +62,7 @@ def _cell(package: Package, key: str, parts: list[Part]) -> list[Flowable]:
     files = ", ".join(package.print_files(first))
     copies = words.PRINT_COPIES.format(count=len(parts), ids=listed([p.id for p in parts], 8))
     return [
-        shaded([lying(first)], *PICTURE_MM, tones=(TONE, TONE)),
+        shaded([lying(first)], WIDE_MM, HIGH_MM, tones=(TONE, TONE)),
         text(f"{key} · {first.name}", CELL),
         text(words.PRINT_FACTS.format(mass=grams(first.mass_g), size=size,
                                       material=first.material), CELL),

@@ -46,22 +46,24 @@ def part_triangles(part: Part) -> tuple[Array, Ints] | None:
 def shaded(
     new: Sequence[Part],
     width_mm: float,
-    height_mm: float,
+    high_mm: tuple[float, float],
     earlier: Sequence[Part] = (),
-    frame: Array | None = None,
     label: bool = False,
     tones: tuple[Tone, Tone] = (NEW, EARLIER),
 ) -> Picture:
     """A picture of parts: new ones strong, earlier ones pale; what those hide shines through.
 
     Args:
-        frame: (n, 3) points that the picture has to hold; else all new parts.
+        new: at least one of them with a shape.
+        high_mm: least and greatest height of the picture.
         label: write the ids of new parts where they fit.
     """
     drawn = [p for p in new if part_triangles(p) is not None]
     old = [p for p in earlier if part_triangles(p) is not None]
-    held = frame if frame is not None else np.vstack([_mesh(p)[0] for p in drawn])
-    front = _framed(held, width_mm, height_mm)
+    low, high = _frame(drawn, old)
+    tall = float((high[1] - low[1]) / (high[0] - low[0]))
+    height_mm = min(max(high_mm[0], width_mm * tall), high_mm[1])
+    front = _framed(low, high, width_mm, height_mm)
     _draw(front, drawn, 0)
     whole = front.copy()
     _draw(whole, old, len(drawn))
@@ -128,14 +130,25 @@ def _ramp(tone: Sequence[float], depth: float) -> Array:
     return np.asarray(light[:, None] * np.array(tone) * 255)
 
 
-def _framed(points: Array, width_mm: float, height_mm: float) -> Scene:
-    """A scene whose picture holds the points with a margin."""
-    seen = points @ isometric().rows.T
-    low, high = seen.min(axis=0), seen.max(axis=0)
+def _frame(new: Sequence[Part], old: Sequence[Part]) -> tuple[Array, Array]:
+    """Right and up, lowest and highest: the new parts, and at least a third of the whole."""
+    def box(parts: Sequence[Part]) -> tuple[Array, Array]:
+        bounds = [_facing(p).bounds for p in parts]
+        return (np.min([b[0][:2] for b in bounds], axis=0),
+                np.max([b[1][:2] for b in bounds], axis=0))
+
+    inner, outer = box(new), box([*new, *old])
+    half = np.maximum((inner[1] - inner[0]) / 2, (outer[1] - outer[0]) / 6)
+    middle = (inner[0] + inner[1]) / 2
+    return np.maximum(middle - half, outer[0]), np.minimum(middle + half, outer[1])
+
+
+def _framed(low: Array, high: Array, width_mm: float, height_mm: float) -> Scene:
+    """A scene whose picture holds the frame with a margin."""
     wide, tall = (int(round(v * PIXELS_PER_MM)) * OVER for v in (width_mm, height_mm))
     size = np.maximum(high - low, 1e-6)
     scale = (1 - 2 * MARGIN) * min(wide / size[0], tall / size[1])
-    return Scene(wide, tall, float(scale), (low + high) / 2)
+    return Scene(wide, tall, float(scale), np.append((low + high) / 2, 0.0))
 
 
 def _labels(

@@ -55,6 +55,7 @@ def sheet_pages(package: Package) -> list[Flowable]:
 
 def _block(package: Package, sheet: Sheet) -> list[Flowable]:
     parts = package.kit.by_id
+    count = len(sheet.placements)
     mass = sum(parts[p.part].mass_g for p in sheet.placements)
     listed = ", ".join(f"{n}\u00a0{p.part}" for n, p in enumerate(sheet.placements, start=1))
     return [
@@ -63,7 +64,7 @@ def _block(package: Package, sheet: Sheet) -> list[Flowable]:
         sheet_picture(package, sheet),
         gap(2),
         text(words.SHEET_FACTS.format(
-            count=len(sheet.placements), mass=fixed(mass), used=fixed(sheet.used_fraction * 100),
+            parts=words.PART_COUNT[count > 1].format(count=count), mass=fixed(mass), used=fixed(sheet.used_fraction * 100),
             length=fixed(sheet.cut_length_mm / 1000, 2), kerf=plain(sheet.kerf_mm, 3))),
         text(f"{words.ON_SHEET}: {listed}", NOTE),
         gap(3),

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import numpy as np
 from reportlab.lib.units import mm
 from reportlab.platypus import CondPageBreak, Flowable, KeepTogether, PageBreak
 
@@ -15,14 +14,13 @@ from buildgen.packet.page import NOTE, WIDTH_MM, Column, Heading, gap, table, te
 from buildgen.packet.shaded import part_triangles, shaded
 from buildgen.packet.tables import where_from
 from buildgen.part import Cover, Part
-from buildgen.solid import Array
 
 COLUMNS = (
     Column("", 6), Column(words.ID, 24), Column(words.NAME, 58), Column(words.MATERIAL, 34),
     Column(words.SHEET_OF, 38), Column(words.MASS_G, 14, True),
 )
-PICTURE_HIGH_MM = 82.0
-LABEL_MOST, SHORT_TABLE = 40, 12
+HIGH_MM = (50.0, 105.0)
+LABEL_MOST, SHORT_TABLE = 60, 12
 BOX = "☐"
 
 
@@ -48,7 +46,7 @@ def _block(package: Package, title: str, new: list[Part], earlier: list[Part]) -
     listed = table(COLUMNS, rows)
     if len(rows) <= SHORT_TABLE:
         return [KeepTogether([*head, listed]), gap(4)]
-    return [CondPageBreak((PICTURE_HIGH_MM + 50) * mm), *head, listed, gap(4)]
+    return [CondPageBreak((HIGH_MM[1] + 40) * mm), *head, listed, gap(4)]
 
 
 def _counted(part: Part) -> str:
@@ -59,19 +57,4 @@ def _counted(part: Part) -> str:
 def step_picture(new: list[Part], earlier: list[Part]) -> Flowable:
     """New parts strong, earlier ones pale and without their coverings, framed on the new."""
     bare = [p for p in earlier if not isinstance(p.form, Cover)]
-    return shaded(new, WIDTH_MM, PICTURE_HIGH_MM, bare, _frame(new, [*new, *bare]),
-                  label=len(new) <= LABEL_MOST)
-
-
-def _frame(new: list[Part], every: list[Part]) -> Array:
-    """Corners of the room the new parts take, at least a third of the whole each way."""
-    def corners(parts: list[Part]) -> Array:
-        found = [t[0] for p in parts if (t := part_triangles(p)) is not None]
-        return np.array([[f(v[:, k].min() if f is min else v[:, k].max() for v in found)
-                          for k in range(3)] for f in (min, max)])
-
-    inner, outer = corners(new), corners(every)
-    middle, half = inner.mean(axis=0), np.ptp(inner, axis=0) / 2
-    half = np.maximum(half, np.ptp(outer, axis=0) / 6)
-    low, high = np.maximum(middle - half, outer[0]), np.minimum(middle + half, outer[1])
-    return np.array([[(low, high)[i >> k & 1][k] for k in range(3)] for i in range(8)])
+    return shaded(new, WIDTH_MM, HIGH_MM, bare, label=len(new) <= LABEL_MOST)

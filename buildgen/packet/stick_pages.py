@@ -7,7 +7,7 @@ from functools import partial
 from reportlab.platypus import Flowable, KeepTogether, PageBreak
 
 from buildgen.packet import words
-from buildgen.packet.amounts import fixed, plain, size_with_inches
+from buildgen.packet.amounts import fixed, plain, section_with_inches, size_with_inches
 from buildgen.packet.package import Package
 from buildgen.packet.page import NOTE, WIDTH_MM, Heading, gap, text
 from buildgen.packet.pen import (
@@ -35,7 +35,7 @@ def stick_pages(package: Package) -> list[Flowable]:
     for plan in package.stick_plans:
         high = ROW_MM * len(plan.bars)
         story.append(KeepTogether([
-            Heading(f"{plan.material} {plan.section} mm · "
+            Heading(f"{plan.material} {section_with_inches(plan.section)} · "
                     f"{len(plan.bars)} x {size_with_inches(plan.stock_length_mm)}", 1),
             Picture(WIDTH_MM, high, partial(_paint, plan, high)),
         ]))

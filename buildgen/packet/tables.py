@@ -77,4 +77,5 @@ def where_from(package: Package, part: Part) -> str:
         return f"{part.form.section}, {fixed(part.form.length_mm)} mm"
     if isinstance(part.form, Bought):
         return part.form.order
-    return part.files_key if package.print_files(part) else ""
+    stem = part.files_key
+    return words.PRINT_FILE.format(stem=stem) if package.print_files(part) else ""

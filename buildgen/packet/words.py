@@ -79,12 +79,12 @@ BUY_NOTE = "Equal things are counted together; masses are of the whole line."
 
 # ------------------------------------------------------------------ sheets, sticks, prints
 SHEETS = "Cut sheets"
-SHEET_LINE = "{file}    {material} {thickness}, {width} x {height} mm"
 SHEET_FACTS = (
-    "{count} parts, {mass} g · {used} % of the sheet used · cut length {length} m · "
+    "{parts}, {mass} g · {used} % of the sheet used · cut length {length} m · "
     "kerf {kerf} mm"
 )
 GRAIN = "grain"
+PART_COUNT = ("{count} part", "{count} parts")
 ON_SHEET = "Parts on this sheet, by their numbers"
 STICKS = "Sticks and tubes"
 STICK_NOTE = (
@@ -107,6 +107,7 @@ STEP_NOTE = (
     "Parts that are new in a step are drawn strongly, earlier ones pale. Fit everything dry "
     "before any glue, tick what is done."
 )
+PRINT_FILE = "file {stem}"
 SHEET_PLACE = "{sheet}, no. {number}"
 SHEET_OF, LENGTH = "Where from", "Length, mm"
 ID, NAME, PROCESS, STEP_COLUMN = "Id", "Name", "Made by", "Step"

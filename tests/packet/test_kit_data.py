@@ -13,6 +13,7 @@ import numpy as np
 import pytest
 
 from buildgen.packet import Package, kit_json, write_manifest, write_packet
+from buildgen.packet.amounts import section_with_inches
 from buildgen.packet.bill import bill
 from buildgen.packet.write import bom_csv, parts_csv
 
@@ -124,3 +125,13 @@ def test_writing_twice_gives_the_same_bytes(package: Package, tmp_path: Path) ->
         write_manifest(package, folder)
     for path in first.iterdir():
         assert path.read_bytes() == (second / path.name).read_bytes(), path.name
+
+
+@pytest.mark.parametrize(
+    ("section", "said"),
+    [("8 x 6 tube", "8 x 6 mm tube (0.315 x 0.236 in)"), ("3 rod", "3 mm rod (0.118 in)"),
+     ("5 x 22 tapered", "5 x 22 mm tapered (0.197 x 0.866 in)"), ("6.35 dowel",
+     "6.35 mm dowel (0.25 in)"), ("strip", "strip")],
+)
+def test_sections_are_said_in_both_units(section: str, said: str) -> None:
+    assert section_with_inches(section) == said
