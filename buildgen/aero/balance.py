@@ -168,7 +168,10 @@ def percent_mac(at_mm: float, mac_le_mm: float, mac_mm: float) -> float:
 
 
 def from_percent_mac(percent: float, mac_le_mm: float, mac_mm: float) -> float:
-    """The station, mm, at a percentage of the mean aerodynamic chord; reverse of the above."""
+    """The station, mm, at a percentage of the mean aerodynamic chord.
+
+    Source: CG = LEMAC + %MAC MAC/100, FAA-H-8083-1.
+    """
     above_zero(mac_mm=mac_mm)
     return mac_le_mm + percent / 100.0 * mac_mm
 

@@ -61,7 +61,7 @@ class BodyFlow:
         Source: H. Multhopp, NACA TM 1036 (1942), who read the upwash off a chart. Here it is the
             flat plate's, sqrt((d + c)/d) - 1, with the circulation of an elliptic load's middle
             and the decay of a horseshoe of pi/4 of the span. Within 5 % of a vortex lattice ahead
-            of rectangular wings of aspect ratio 5 to 10.
+            of rectangular wings of aspect ratio 5 to 8 (5.1 % at 10).
         """
         x = np.asarray(x_mm, dtype=np.float64)
         chord = self.wing_te_x_mm - self.wing_le_x_mm

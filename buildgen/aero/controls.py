@@ -75,8 +75,22 @@ def surface_travel_deg(servo_arm_mm: float, horn_mm: float, servo_deg: float) ->
 
 
 def servo_turn_deg(servo_arm_mm: float, horn_mm: float, surface_deg: float) -> float:
-    """Turn of the servo that a deflection asks for; reverse of ``surface_travel_deg``."""
-    return surface_travel_deg(horn_mm, servo_arm_mm, surface_deg)
+    """Turn of the servo that a deflection asks for.
+
+    Raises:
+        DesignError: the horn is so long that no turn of the arm gives it.
+
+    Source: r_s sin(a) = r_h sin(d), geometry; reverse of ``surface_travel_deg``.
+    """
+    above_zero(servo_arm_mm=servo_arm_mm, horn_mm=horn_mm)
+    within(-90.0, 90.0, surface_deg=surface_deg)
+    sine = horn_mm / servo_arm_mm * math.sin(math.radians(surface_deg))
+    if abs(sine) > 1.0:
+        raise DesignError(
+            Problem("servo_arm_mm", f"{servo_arm_mm:g} is too short for {surface_deg:g} degrees.",
+                    "Take a longer arm or a shorter horn.")
+        )
+    return math.degrees(math.asin(sine))
 
 
 def linkage_ratio(servo_arm_mm: float, horn_mm: float, servo_deg: float = 0.0) -> float:
@@ -96,7 +110,7 @@ def linkage_ratio(servo_arm_mm: float, horn_mm: float, servo_deg: float = 0.0) -
 
 
 def dynamic_pressure_pa(speed_m_s: float, density_kg_m3: float = 1.225) -> float:
-    """Half the density times speed squared."""
+    """Half the density times speed squared. Source: definition."""
     not_negative(speed_m_s=speed_m_s)
     above_zero(density_kg_m3=density_kg_m3)
     return 0.5 * density_kg_m3 * speed_m_s**2
@@ -158,6 +172,8 @@ def servo_torque_n_mm(hinge_n_mm: float, ratio: float, margin: float = 2.0) -> f
         hinge_n_mm: moment about the hinge line.
         ratio: from ``linkage_ratio``, at full throw.
         margin: 2 or more (common practice, no source).
+
+    Source: virtual work, torque times turn equals moment times deflection.
     """
     above_zero(ratio=ratio, margin=margin)
     return abs(hinge_n_mm) * ratio * margin

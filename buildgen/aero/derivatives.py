@@ -70,6 +70,7 @@ def derivatives(lattice: Lattice, reference: Reference, flow: Flow) -> Derivativ
         x_n = x - c Cm_alpha/CL_alpha.
     """
     def by(name: str, step: float, unit: float) -> Slopes:
+        """Change of all coefficients with one entry of the flow."""
         value = getattr(flow, name)
         low, high = (
             loads(lattice, reference, replace(flow, **{name: value + s})) for s in (-step, step)
@@ -95,6 +96,8 @@ def control_slopes(lattice: Lattice, reference: Reference, flow: Flow, flap: str
 
     Raises:
         DesignError: there is no such flap.
+
+    Source: central difference of ``loads``; the flap turns the normals behind its hinge.
     """
     value = flow.flaps_deg.get(flap, 0.0)
     low, high = (

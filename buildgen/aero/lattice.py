@@ -16,15 +16,15 @@ from numpy.typing import ArrayLike
 from buildgen.aero.bounds import Floats, Whole, above_zero
 from buildgen.aero.lattice_mesh import Mesh, mesh_of
 from buildgen.aero.lattice_surface import Surface
-from buildgen.aero.lattice_wash import far_wash, wash
+from buildgen.aero.lattice_wake import (
+    CORE_SHARE,
+    strip_widths_mm,
+    strips_across,
+    wash_from,
+    wash_within,
+)
+from buildgen.aero.lattice_wash import far_wash
 from buildgen.problems import DesignError, Problem, nearest
-
-CORE_SHARE = 0.7
-"""Core of a leg as seen by other surfaces, over its strip's width.
-
-A wake sheet drawn as single legs is lumpy in its own plane. Behind an elliptic load this core
-leaves 3 % of scatter there and takes 0.8 % of the mean; 0.3 leaves 10 %, 1.0 takes 2 %.
-"""
 
 
 @dataclass(frozen=True, slots=True)
@@ -128,9 +128,7 @@ class Lattice:
         mesh = self.mesh
         if surface not in mesh.names:
             raise DesignError(Problem(surface, "is no surface.", nearest(surface, mesh.names)))
-        own = np.flatnonzero(mesh.strip_surface == mesh.names.index(surface))
-        y, z = mesh.strip_middle_mm[own, 1], mesh.strip_middle_mm[own, 2]
-        return own[np.lexsort((z, y))]
+        return strips_across(mesh, mesh.names.index(surface))
 
 
 def lattice_of(surfaces: Sequence[Surface]) -> Lattice:
@@ -143,15 +141,15 @@ def lattice_of(surfaces: Sequence[Surface]) -> Lattice:
         Smith, Aerodynamics for Engineers, chapter on wings of finite span.
     """
     mesh = mesh_of(surfaces)
-    core = _core(mesh)
-    at_control = wash(mesh.control_mm, mesh.port_mm, mesh.starboard_mm, core)
+    owner = mesh.strip_surface[mesh.strip]
+    at_control = wash_within(mesh, mesh.control_mm, owner)
     through = np.einsum("mni,mi->mn", at_control, _normals(mesh, mesh.slope_rad))
     try:
         inverse = np.linalg.inv(through)
     except np.linalg.LinAlgError:
         raise DesignError(Problem("surfaces", "overlap: the lattice has no solution.")) from None
     middles = 0.5 * (mesh.port_mm + mesh.starboard_mm)
-    return Lattice(mesh, inverse, wash(middles, mesh.port_mm, mesh.starboard_mm, core))
+    return Lattice(mesh, inverse, wash_within(mesh, middles, owner))
 
 
 def loads(lattice: Lattice, reference: Reference, flow: Flow) -> Loads:
@@ -196,14 +194,19 @@ def downwash_deg(
 
     Returns:
         (m,), down positive (upwash ahead of a wing is negative).
+
+    Source: Biot-Savart law, as ``wash``.
     """
     mesh = lattice.mesh
     points = np.asarray(points_mm, dtype=np.float64).reshape(-1, 3)
-    own = np.concatenate([lattice.strips(name) for name in surfaces or mesh.names])
-    counts = np.isin(mesh.strip, own)
-    core = CORE_SHARE * _widths(mesh)[mesh.strip]
-    velocity = wash(points, mesh.port_mm, mesh.starboard_mm, core)[..., 2]
-    return -np.degrees(np.arctan(velocity @ np.where(counts, found.circulation_mm, 0.0)))
+    velocity = np.zeros(len(points))
+    for name in surfaces or mesh.names:
+        if name not in mesh.names:
+            raise DesignError(Problem(name, "is no surface.", nearest(name, mesh.names)))
+        field = wash_from(mesh, points, mesh.names.index(name))
+        velocity += field[..., 2] @ found.circulation_mm
+    angle: Floats = -np.degrees(np.arctan(velocity))
+    return angle
 
 
 def span_efficiency(found: Loads, aspect_ratio: float) -> float:
@@ -274,24 +277,10 @@ def _far_drag_mm2(mesh: Mesh, strip_circulation_mm: Floats) -> float:
     """Induced drag over dynamic pressure."""
     ends = mesh.strip_ends_mm[:, :, 1:]
     other = mesh.strip_surface[:, None] != mesh.strip_surface[None]
-    core = CORE_SHARE * _widths(mesh)[None] * other
+    core = CORE_SHARE * float(strip_widths_mm(mesh).mean()) * other
     velocity = np.einsum(
         "mni,n->mi", far_wash(mesh.strip_middle_mm[:, 1:], ends, core), strip_circulation_mm
     )
     along = ends[:, 1] - ends[:, 0]
     through = velocity[:, 1] * along[:, 0] - velocity[:, 0] * along[:, 1]
     return float(-strip_circulation_mm @ through)
-
-
-def _widths(mesh: Mesh) -> Floats:
-    """(m,): width of each strip seen from behind."""
-    across = mesh.strip_ends_mm[:, 1, 1:] - mesh.strip_ends_mm[:, 0, 1:]
-    widths: Floats = np.linalg.norm(across, axis=1)
-    return widths
-
-
-def _core(mesh: Mesh) -> Floats:
-    """(n, n): core of each panel's legs as each other panel sees it; none within a surface."""
-    owner = mesh.strip_surface[mesh.strip]
-    core: Floats = CORE_SHARE * _widths(mesh)[mesh.strip] * (owner[:, None] != owner[None])
-    return core

@@ -94,12 +94,16 @@ class Surface:
     def __post_init__(self) -> None:
         if len(self.stations) < 2:
             raise DesignError(Problem(self.name, "needs two stations or more."))
-        above_zero(chordwise=self.chordwise, spanwise=self.spanwise, span_mm=self.along_mm[-1])
+        above_zero(chordwise=self.chordwise, spanwise=self.spanwise)
+        span = self.along_mm[-1]
+        if not (np.diff(self.along_mm) > 1e-9 * span).all():
+            raise DesignError(Problem(self.name, "has two stations at one place."))
         for station in self.stations:
             not_negative(chord_mm=station.chord_mm, y_mm=station.y_mm if self.mirrored else 0.0)
         for flap in self.flaps:
             within(0.0, 0.999, hinge=flap.hinge)
-            above_zero(flap_span_mm=flap.outer_mm - flap.inner_mm)
+            within(0.0, flap.outer_mm, inner_mm=flap.inner_mm)
+            within(flap.inner_mm + 1e-6 * span, span * (1.0 + 1e-6), outer_mm=flap.outer_mm)
 
     @property
     def along_mm(self) -> Floats:
@@ -124,6 +128,8 @@ def stations_of(
 
     Raises:
         DesignError: two panels that meet have unlike chords, or the numbers do not match.
+
+    Source: geometry, as ``planform.Panel`` describes it.
     """
     count = len(panels) + 1
     for name, given in (("twists_deg", twists_deg), ("mean_lines", mean_lines)):

@@ -17,13 +17,15 @@ def wash(points_mm: Floats, port_mm: Floats, starboard_mm: Floats, core_mm: Floa
         port_mm: (n, 3), port ends of the bound vortices.
         starboard_mm: (n, 3), starboard ends.
         core_mm: (m, n) or (n,), radius within which a leg's velocity is eased off; 0 is none.
+            Neighbours that share a leg need the same, or it does not cancel between them.
 
     Returns:
         (m, n, 3), 1/mm: velocity over speed for a circulation over speed of 1 mm.
 
     Source: Biot-Savart law for a bound segment and two semi-infinite legs, in the form without
         angles of M. Drela, Flight Vehicle Aerodynamics, chapter 5 (from memory); J. Katz and A.
-        Plotkin, Low-Speed Aerodynamics, section 2.12.
+        Plotkin, Low-Speed Aerodynamics, section 2.12; core of G. H. Vatistas, r/sqrt(r^4 + c^4),
+        which leaves the field outside it alone.
     """
     a = points_mm[:, None] - port_mm[None]
     b = points_mm[:, None] - starboard_mm[None]
@@ -42,7 +44,7 @@ def wash(points_mm: Floats, port_mm: Floats, starboard_mm: Floats, core_mm: Floa
 def _leg(away: Floats, length: Floats, core_mm: Floats) -> Floats:
     """Half-infinite leg along +x from where ``away`` is measured, (m, n, 3)."""
     ahead = away[..., 0]
-    aside = away[..., 1] ** 2 + away[..., 2] ** 2 + np.square(core_mm)
+    aside = np.hypot(away[..., 1] ** 2 + away[..., 2] ** 2, np.square(core_mm))
     factor = (1.0 + ahead / np.maximum(length, _TINY)) / np.maximum(aside, _TINY)
     factor = np.where(aside > _TINY, factor, 0.0)
     return np.stack([np.zeros_like(ahead), away[..., 2] * factor, -away[..., 1] * factor], axis=2)
@@ -64,7 +66,8 @@ def far_wash(points_mm: Floats, ends_mm: Floats, core_mm: Floats) -> Floats:
     field = np.zeros((len(points_mm), len(ends_mm), 2))
     for end, sign in ((0, -1.0), (1, 1.0)):
         away = points_mm[:, None] - ends_mm[None, :, end]
-        square = np.maximum(np.einsum("mni,mni->mn", away, away) + np.square(core_mm), _TINY)
+        square = np.hypot(np.einsum("mni,mni->mn", away, away), np.square(core_mm))
+        square = np.maximum(square, _TINY)
         field[..., 0] += -sign * away[..., 1] / square
         field[..., 1] += sign * away[..., 0] / square
     field /= 2.0 * np.pi

@@ -76,7 +76,10 @@ class MeanChord:
 
 
 def area_mm2(panels: Sequence[Panel]) -> float:
-    """Sum of the panels' own areas (one half of a mirrored surface), dihedral not projected."""
+    """Sum of the panels' own areas (one half of a mirrored surface), dihedral not projected.
+
+    Source: geometry of the trapezoid, as for the other areas here.
+    """
     return sum(panel.area_mm2 for panel in _some(panels))
 
 
@@ -116,6 +119,8 @@ def aspect_ratio(panels: Sequence[Panel], mirrored: bool = True) -> float:
 
     A surface that is not mirrored (a fin) is taken along its own span, as a surface of that span
     alone: what stands at its root is a matter of the method that uses it.
+
+    Source: definition, b^2/S.
     """
     if mirrored:
         return 2.0 * half_span_mm(panels) ** 2 / projected_area_mm2(panels)
@@ -124,7 +129,7 @@ def aspect_ratio(panels: Sequence[Panel], mirrored: bool = True) -> float:
 
 
 def taper_ratio(panels: Sequence[Panel]) -> float:
-    """Last chord over first."""
+    """Last chord over first. Source: definition."""
     above_zero(root_chord_mm=_some(panels)[0].root_chord_mm)
     return panels[-1].tip_chord_mm / panels[0].root_chord_mm
 
@@ -138,6 +143,8 @@ def sweep_deg(panels: Sequence[Panel], chord_fraction: float = 0.25) -> float:
 
     Returns:
         Degrees, aft positive, against a line square to the root.
+
+    Source: geometry.
     """
     back = along = 0.0
     for panel in _some(panels):
