@@ -9,7 +9,7 @@ from reportlab.lib.units import mm
 from reportlab.platypus import Flowable
 
 from buildgen.packet import words
-from buildgen.packet.amounts import fixed, grams, plain
+from buildgen.packet.amounts import fixed, plain
 from buildgen.packet.package import Package
 from buildgen.packet.page import (
     HEIGHT_MM,
@@ -57,7 +57,7 @@ def key_figures(package: Package) -> list[tuple[str, str, str]]:
     if area_dm2:
         figures.append((words.AREA, f"{fixed(area_dm2)} dm²",
                         f"{fixed(area_dm2 * 15.5, 0)} in²"))
-    figures.append((words.MASS, f"{grams(b.mass_g)} ± {grams(b.mass_sigma_g)} g",
+    figures.append((words.MASS, f"{fixed(b.mass_g)} ± {fixed(b.mass_sigma_g)} g",
                     f"{plain(b.mass_g / 28.349523)} oz"))
     if area_dm2:
         loading = b.mass_g / area_dm2

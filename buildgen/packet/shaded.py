@@ -24,7 +24,7 @@ NEW_EDGE: Tone = (0.10, 0.10, 0.12)
 EARLIER: Tone = (0.95, 0.95, 0.95)
 EARLIER_EDGE: Tone = (0.74, 0.75, 0.77)
 PIXELS_PER_MM, OVER = 6.0, 2
-MARGIN, LEVELS, LEAST_PIXELS = 0.06, 48, 30
+MARGIN, LEVELS, LEAST_PIXELS = 0.06, 48, 10
 SKIN_NEARER_PX = 2.0
 HIDDEN_EDGE: Tone = (0.48, 0.44, 0.38)
 PAPER: Tone = (1.0, 1.0, 1.0)
@@ -156,16 +156,20 @@ def _labels(
 ) -> list[tuple[float, float, str]]:
     """Ids in the middle of what is seen of each part, left out where they would collide."""
     placed: list[tuple[float, float, str]] = []
-    owners = scene.rows(scene.owner)
+    owners = scene.rows(scene.owner)[::OVER, ::OVER]
+    seen = np.flatnonzero(owners >= 0)
+    order = np.argsort(owners.ravel()[seen], kind="stable")
+    ends = np.searchsorted(owners.ravel()[seen][order], np.arange(len(parts) + 1))
     for owner, part in enumerate(parts):
-        rows, columns = np.nonzero(owners == owner)
-        if len(rows) < LEAST_PIXELS:
+        mine = seen[order[ends[owner] : ends[owner + 1]]]
+        if len(mine) < LEAST_PIXELS:
             continue
+        rows, columns = np.divmod(mine, owners.shape[1])
         middle = np.argmin((rows - rows.mean()) ** 2 + (columns - columns.mean()) ** 2)
         half = text_width_mm(part.id, SMALL_PT - 1) / 2 + 0.6
-        x = float(columns[middle]) * width_mm / scene.width
+        x = float(columns[middle]) * width_mm / owners.shape[1]
         x = min(max(x, half), width_mm - half)
-        y = height_mm * (1 - float(rows[middle]) / scene.height) - 0.8
+        y = height_mm * (1 - float(rows[middle]) / owners.shape[0]) - 0.8
         if all(abs(y - q) > 2.8 or abs(x - p) > half + text_width_mm(w, SMALL_PT - 1) / 2 + 0.6
                for p, q, w in placed):
             placed.append((x, y, part.id))

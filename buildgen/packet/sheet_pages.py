@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING
 
 from reportlab.platypus import Flowable, KeepTogether, PageBreak
 from shapely.geometry import Point as ShapelyPoint
+from shapely.geometry import Polygon
 
 from buildgen.packet import words
 from buildgen.packet.amounts import fixed, plain, size_with_inches, with_inches
@@ -64,7 +65,8 @@ def _block(package: Package, sheet: Sheet) -> list[Flowable]:
         sheet_picture(package, sheet),
         gap(2),
         text(words.SHEET_FACTS.format(
-            parts=words.PART_COUNT[count > 1].format(count=count), mass=fixed(mass), used=fixed(sheet.used_fraction * 100),
+            parts=words.PART_COUNT[count > 1].format(count=count), mass=fixed(mass),
+            used=fixed(sheet.used_fraction * 100),
             length=fixed(sheet.cut_length_mm / 1000, 2), kerf=plain(sheet.kerf_mm, 3))),
         text(f"{words.ON_SHEET}: {listed}", NOTE),
         gap(3),
@@ -79,8 +81,8 @@ def laid(placement: Placement) -> NestPlacement:
 
 def sheet_picture(package: Package, sheet: Sheet) -> Picture:
     """The sheet to a plain scale; a long one in two strips, so that it shows larger."""
-    strips = 2 if sheet.width_mm > LONG * sheet.height_mm else 1
-    long = sheet.width_mm / strips
+    long = sheet.width_mm / (2 if sheet.width_mm > LONG * sheet.height_mm else 1)
+    strips = 1 + (long < sheet.width_mm and used_to_mm(package, sheet) > long)
     n = round_scale((WIDTH_MM, MOST_HIGH_MM), (long, sheet.height_mm))
     high = sheet.height_mm / n
     whole = strips * high + (strips - 1) * BETWEEN_MM + ABOVE_MM
@@ -90,9 +92,23 @@ def sheet_picture(package: Package, sheet: Sheet) -> Picture:
             foot = whole - ABOVE_MM - (strip + 1) * high - strip * BETWEEN_MM
             inner = pen.scaled(1 / n, (-strip * long / n, foot))
             _strip(package, sheet, n, (strip * long, (strip + 1) * long), inner)
-        _head(pen, sheet, n, long / n, whole)
+        _head(pen, sheet, n, whole)
+        if strips * long < sheet.width_mm:
+            pen.text((long / n, whole - 2.4), words.REST_EMPTY, SMALL_PT - 1, "right", ink=SOFT)
 
     return Picture(WIDTH_MM, whole, paint)
+
+
+def used_to_mm(package: Package, sheet: Sheet) -> float:
+    """How far along the sheet its parts reach."""
+    return max((outline_of(package, at).bounds[2] for at in sheet.placements), default=0.0)
+
+
+def outline_of(package: Package, at: Placement) -> Polygon:
+    """A part's outline where it lies on its sheet."""
+    part = package.kit.by_id[at.part]
+    assert isinstance(part.form, Plate)
+    return placed(part.form.shape2d, laid(at))
 
 
 def _strip(
@@ -103,9 +119,7 @@ def _strip(
     pen.clip((ends[0] - n * 0.3, -n * 0.3), (ends[1] + n * 0.3, sheet.height_mm + n * 0.3))
     pen.box((0, 0), (sheet.width_mm, sheet.height_mm), THIN_PT, SOFT)
     for at in sheet.placements:
-        part = package.kit.by_id[at.part]
-        assert isinstance(part.form, Plate)
-        outline = placed(part.form.shape2d, laid(at))
+        outline = outline_of(package, at)
         if outline.bounds[2] > ends[0] and outline.bounds[0] < ends[1]:
             pen.shape(outline, HAIR_PT * 1.4, INK, WASH)
     pen.canvas.restoreState()
@@ -116,7 +130,10 @@ def _strip(
         label = _label(package.kit.by_id[at.part], at, str(number), n,
                        package.definition.laser.letter_mm)
         if ends[0] <= label.at[0] < ends[1]:
-            pen.text(label.at, label.words, label.size_pt, "middle", turn_deg=label.turn_deg)
+            half = text_width_mm(label.words, label.size_pt) / 2 * n
+            x = min(max(label.at[0], ends[0] + half), ends[1] - half)
+            pen.text((x, label.at[1]), label.words, label.size_pt, "middle",
+                     turn_deg=label.turn_deg)
     if ends[0] == 0:
         pen.line([(0, 3 * n), (0, 0), (3 * n, 0)], HEAVY_PT)
 
@@ -162,7 +179,7 @@ def _middled(words_: str, middle: Point, size_pt: float, turn_deg: float, n: flo
     return Label(words_, (x + down * math.sin(turn), y - down * math.cos(turn)), size_pt, turn_deg)
 
 
-def _head(pen: Pen, sheet: Sheet, n: float, width: float, top: float) -> None:
+def _head(pen: Pen, sheet: Sheet, n: float, top: float) -> None:
     """Above the sheet: grain along its longer side, and the scale."""
     y = top - ABOVE_MM + 1.6
     pen.text((WIDTH_MM, y - 0.5), words.SCALE.format(scale=plain(n)), SMALL_PT - 1, "right",

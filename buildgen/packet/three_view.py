@@ -26,7 +26,7 @@ from buildgen.packet.pen import (
 from buildgen.packet.view import FROM_ABOVE, FROM_FRONT, FROM_LEFT, View, eased, view_of
 from buildgen.part import Bought, Cover, Kit
 
-SCALES = (1, 2, 2.5, 3, 4, 5, 6, 7.5, 8, 10, 12, 12.5, 15, 20, 25, 30, 40, 50, 60, 80, 100)
+SCALES = (1, 2, 2.5, 3, 4, 5, 6, 7.5, 8, 10, 12, 14, 15, 16, 18, 20, 25, 30, 40, 50, 60, 80, 100)
 BETWEEN_MM, LABEL_MM, DIM_MM, KEY_MM = 5.0, 5.0, 8.0, 4.0
 
 

@@ -84,6 +84,7 @@ SHEET_FACTS = (
     "kerf {kerf} mm"
 )
 GRAIN = "grain"
+REST_EMPTY = "the other half is empty"
 PART_COUNT = ("{count} part", "{count} parts")
 ON_SHEET = "Parts on this sheet, by their numbers"
 STICKS = "Sticks and tubes"
