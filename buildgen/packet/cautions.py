@@ -2,17 +2,30 @@
 
 from __future__ import annotations
 
+from xml.sax.saxutils import escape
+
 from reportlab.lib.styles import ParagraphStyle
 from reportlab.lib.units import mm
-from reportlab.platypus import Flowable, KeepTogether, PageBreak, Table
+from reportlab.platypus import Flowable, KeepTogether, PageBreak, Paragraph, Table
 
 from buildgen.packet import words
-from buildgen.packet.page import NOTE, PART_HEAD, PLAIN_CELLS, TEXT, WIDTH_MM, Heading, gap, text
+from buildgen.packet.page import (
+    NOTE,
+    PART_HEAD,
+    PLAIN_CELLS,
+    TEXT,
+    WIDTH_MM,
+    Heading,
+    gap,
+    text,
+    unbroken,
+)
 from buildgen.packet.pen import BOLD, INK, LINE_PT, SMALL_PT
 
 GUTTER_MM = 8.0
 POINT = ParagraphStyle("point", TEXT, fontSize=SMALL_PT + 0.3, leading=9.8, leftIndent=3.4 * mm,
                        bulletFontSize=SMALL_PT - 1.5, bulletIndent=0, spaceAfter=1.1 * mm)
+TICKED = ParagraphStyle("ticked", POINT, leftIndent=6 * mm, bulletFontSize=POINT.fontSize)
 FRAMED = ParagraphStyle("framed", TEXT, fontName=BOLD, fontSize=TEXT.fontSize, leading=12.5)
 
 
@@ -44,16 +57,15 @@ def _column(groups: tuple[tuple[str, str, tuple[str, ...]], ...]) -> list[Flowab
     return story
 
 
-def _points(points: tuple[str, ...]) -> list[Flowable]:
-    from reportlab.platypus import Paragraph
+def _points(points: tuple[str, ...], mark: str = "•") -> list[Flowable]:
+    style = POINT if mark == "•" else TICKED
+    return [Paragraph(escape(unbroken(point)), style, bulletText=mark) for point in points]
 
-    return [Paragraph(point, POINT, bulletText="•") for point in points]
 
-
-def caution(*places: str) -> Flowable:
+def caution(*places: str, mark: str = "•") -> Flowable:
     """The cautions of these places as a block, to stand where the work is done."""
     story: list[Flowable] = []
     for place, _, points in words.CAUTION_GROUPS:
         if place in places:
-            story += _points(points)
+            story += _points(points, mark)
     return KeepTogether(story)

@@ -59,6 +59,8 @@ PART_HEAD = ParagraphStyle(
     spaceAfter=1.6 * mm, keepWithNext=1,
 )
 
+BOX = "☐"
+"""To tick."""
 PLAIN_CELLS = ("FONTNAME", (0, 0), (-1, -1), PLAIN)
 """Without it a table names a letter that is not embedded."""
 

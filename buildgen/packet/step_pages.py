@@ -10,10 +10,10 @@ from buildgen.packet.amounts import grams
 from buildgen.packet.cautions import caution
 from buildgen.packet.kit_json import quantity
 from buildgen.packet.package import Package
-from buildgen.packet.page import NOTE, WIDTH_MM, Column, Heading, gap, table, text
+from buildgen.packet.page import BOX, NOTE, WIDTH_MM, Column, Heading, gap, table, text
 from buildgen.packet.shaded import part_triangles, shaded
 from buildgen.packet.tables import where_from
-from buildgen.part import Cover, Part
+from buildgen.part import Bought, Cover, Part
 
 COLUMNS = (
     Column("", 6), Column(words.ID, 24), Column(words.NAME, 58), Column(words.MATERIAL, 34),
@@ -21,7 +21,8 @@ COLUMNS = (
 )
 HIGH_MM = (50.0, 105.0)
 LABEL_MOST, SHORT_TABLE = 60, 12
-BOX = "☐"
+CAUTION_KEYS = {"propeller": ("propeller", "outrunner", "motor"), "battery": ("battery",)}
+"""Cautions that a step carries when one of these comes on board."""
 
 
 def step_pages(package: Package) -> list[Flowable]:
@@ -44,9 +45,16 @@ def _block(package: Package, title: str, new: list[Part], earlier: list[Part]) -
     if any(part_triangles(p) is not None for p in new):
         head.append(step_picture(new, earlier))
     listed = table(COLUMNS, rows)
+    if places := [p for p, keys in CAUTION_KEYS.items() if any(_is(part, keys) for part in new)]:
+        head.insert(1, caution(*places))
     if len(rows) <= SHORT_TABLE:
         return [KeepTogether([*head, listed]), gap(4)]
     return [CondPageBreak((HIGH_MM[1] + 40) * mm), *head, listed, gap(4)]
+
+
+def _is(part: Part, words_: tuple[str, ...]) -> bool:
+    """Whether a bought part is one of these, by what it is."""
+    return isinstance(part.form, Bought) and any(w in part.material for w in words_)
 
 
 def _counted(part: Part) -> str:

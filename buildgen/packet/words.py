@@ -124,6 +124,18 @@ PROCESSES = {
 OF_MAC = "of the mean aerodynamic chord"
 SHEETS_COUNT = "on {count} cut sheets"
 
+# ------------------------------------------------------------------ before the first flight
+FLIGHT = "Before the first flight"
+FLIGHT_NOTE = (
+    "Measure, write down, compare. If the mass differs by more than about 10 %, or the balance "
+    "lies outside its range, put that right and work the figures out anew before flying."
+)
+QUANTITY_NAMED, PLANNED, MEASURED, BY = "What", "This packet says", "Measured", "By, date"
+SPAN_ROW, MASS_ROW, CG_ROW = "Span", "Mass, ready to fly", "Centre of gravity, battery in place"
+RANGE_ROW, SIDE_ROW = "Range of the centre of gravity", "Sideways balance, from the middle"
+ITEM_ROW = "{item}, its middle"
+FROM_LE = "{x} mm from the root leading edge"
+
 # ------------------------------------------------------------------ cautions
 CAUTIONS = "Before you begin"
 NOT_APPROVAL = (
