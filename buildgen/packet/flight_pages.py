@@ -26,7 +26,9 @@ def flight_pages(package: Package) -> list[Flowable]:
         gap(2),
         table(COLUMNS, rows),
         gap(5),
-        caution("before", "propeller", "battery", "fly", mark=BOX),
+        caution("before", mark=BOX),
+        gap(5),
+        caution("battery", "propeller", "fly"),
     ]
 
 

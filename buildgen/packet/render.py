@@ -100,8 +100,8 @@ class Scene:
         low, high = (b[:2] - self.centre[:2] for b in seen.bounds)
         return bool((high > -half).all() and (low < half).all())
 
-    def add(self, things: Sequence[tuple[int, Facing]], nearer_px: float = 0.0) -> None:
-        """Draw things with their owners; `nearer_px` draws them before what they touch."""
+    def add(self, things: Sequence[tuple[int, Facing]], nearer_mm: float = 0.0) -> None:
+        """Draw things with their owners; `nearer_mm` draws them before what they touch."""
         things = [(owner, seen) for owner, seen in things if self.holds(seen)]
         if not things:
             return
@@ -110,7 +110,7 @@ class Scene:
         light = np.concatenate([seen.light for _, seen in things])
         corners = np.concatenate([seen.corners for _, seen in things]) - self.centre
         corners *= self.pixels_per_mm * np.array([1.0, -1.0, -1.0])
-        corners += np.array([self.width / 2, self.height / 2, -nearer_px])
+        corners += np.array([self.width / 2, self.height / 2, -nearer_mm * self.pixels_per_mm])
         face, index, depth = _filled(corners, self.width, self.height)
         before = self.depth[index]
         np.minimum.at(self.depth, index, depth)

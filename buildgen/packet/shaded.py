@@ -25,7 +25,8 @@ EARLIER: Tone = (0.95, 0.95, 0.95)
 EARLIER_EDGE: Tone = (0.74, 0.75, 0.77)
 PIXELS_PER_MM, OVER = 6.0, 2
 MARGIN, LEVELS, LEAST_PIXELS = 0.06, 48, 10
-SKIN_NEARER_PX = 2.0
+SKIN_NEARER_MM = 5.0
+"""Skins are drawn this much before the plates that they lie on."""
 HIDDEN_EDGE: Tone = (0.48, 0.44, 0.38)
 PAPER: Tone = (1.0, 1.0, 1.0)
 EDGE_CODE = 3 * LEVELS
@@ -93,7 +94,7 @@ def _draw(scene: Scene, parts: Sequence[Part], first: int) -> None:
     """Closed parts, then skins a little nearer than the frame that they touch."""
     numbered = list(enumerate(parts, first))
     scene.add([(n, _facing(p)) for n, p in numbered if not isinstance(p.form, Cover)])
-    scene.add([(n, _facing(p)) for n, p in numbered if isinstance(p.form, Cover)], SKIN_NEARER_PX)
+    scene.add([(n, _facing(p)) for n, p in numbered if isinstance(p.form, Cover)], SKIN_NEARER_MM)
 
 
 def _coloured(

@@ -194,7 +194,7 @@ def test_first_flight_page_has_room_for_what_is_measured(
     assert f"{fixed(balance['mass_g'])} ± {fixed(balance['mass_sigma_g'])} g" in flight
     assert f"{fixed(balance['target_cg_x_mm'][0])} … " in flight
     assert words.MEASURED in flight
-    assert flight.count("☐") > 10
+    assert flight.count("☐") == 11, "seven figures, four things to look over"
 
 
 def test_cautions_stand_where_the_work_is_done(pages: list[str]) -> None:
