@@ -164,8 +164,8 @@ class Body:
         xs = np.array([s.x_mm for s in self.stations])
         half = np.array([s.width_mm / 2 for s in self.stations])
         bend = self._bend(np.column_stack([xs, -half]))
-        top = [s.top_mm - self.deck_mm for s in self.stations]
-        bottom = [s.bottom_mm + self.deck_mm for s in self.stations]
+        top = [s.top_mm - self._deck_depth(s.x_mm, True) for s in self.stations]
+        bottom = [s.bottom_mm + self._deck_depth(s.x_mm, False) for s in self.stations]
         ring = [*zip(bend.flat_mm, bottom, strict=True),
                 *list(zip(bend.flat_mm, top, strict=True))[::-1]]
         pose = Pose.at((0, 0, 0), (1, 0, 0), (0, 0, 1))
@@ -173,7 +173,10 @@ class Body:
 
     def _deck_blank(self, upper: bool) -> Blank:
         xs = np.array([s.x_mm for s in self.stations])
-        level = [s.top_mm - self.deck_mm if upper else s.bottom_mm for s in self.stations]
+        level = [
+            s.top_mm - self._deck_depth(s.x_mm, True) if upper else s.bottom_mm
+            for s in self.stations
+        ]
         bend = self._bend(np.column_stack([xs, level]))
         half = [s.width_mm / 2 for s in self.stations]
         ring = [*zip(bend.flat_mm, half, strict=True),
@@ -232,8 +235,8 @@ class Body:
         """The smaller of the two faces, inside sides and decks, with the play of a glued fit."""
         play = self.shop.press_mm
         half = min(self._inside(x) for x in (front, back)) - play
-        top = min(self.top(x) for x in (front, back)) - self.deck_mm - play
-        bottom = max(self.bottom(x) for x in (front, back)) + self.deck_mm + play
+        top = min(self.top(x) - self._deck_depth(x, True) for x in (front, back)) - play
+        bottom = max(self.bottom(x) + self._deck_depth(x, False) for x in (front, back)) + play
         if half <= 0 or top <= bottom:
             raise DesignError(
                 Problem("fuselage.station", f"At x = {front:g} mm no room is left for a former"
@@ -243,14 +246,19 @@ class Body:
 
     def _inside(self, x: float) -> float:
         """Half the clear width: an oblique side takes more than its thickness."""
-        xs = [s.x_mm for s in self.stations]
-        k = int(np.clip(np.searchsorted(xs, x, side="right") - 1, 0, len(xs) - 2))
-        slopes = []
-        for i in {k, max(k - 1, 0)} if abs(x - xs[k]) < 6 else {k}:
-            a, b = self.stations[i], self.stations[i + 1]
-            slopes.append((b.width_mm - a.width_mm) / 2 / (b.x_mm - a.x_mm))
-        steep = max(abs(s) for s in slopes)
+        steep = self._steepest(x, [s.width_mm / 2 for s in self.stations])
         return self.width(x) / 2 - self.side_mm * float(np.hypot(1, steep))
+
+    def _deck_depth(self, x: float, upper: bool) -> float:
+        """What a sloping deck takes of the height: more than its thickness."""
+        levels = [s.top_mm if upper else s.bottom_mm for s in self.stations]
+        return self.deck_mm * float(np.hypot(1, self._steepest(x, levels)))
+
+    def _steepest(self, x: float, values: list[float]) -> float:
+        """Greatest slope of the legs that meet near x."""
+        xs = [s.x_mm for s in self.stations]
+        near = [k for k in range(len(xs) - 1) if xs[k] - 6 <= x <= xs[k + 1] + 6]
+        return max(abs((values[k + 1] - values[k]) / (xs[k + 1] - xs[k])) for k in near)
 
     def _pass(self, outline: Polygon) -> Cut:
         """An opening with round corners for battery, wires and hands."""

@@ -15,6 +15,7 @@ from dataclasses import dataclass
 from functools import cached_property
 
 import numpy as np
+from shapely.affinity import translate
 from shapely.geometry import Polygon, box
 
 from buildgen.airframe.bays import Bay
@@ -121,11 +122,13 @@ class MountShape:
         return clearance_hole_mm(self.mount.lock_screw, "medium", "power.mount.lock_screw",
                                  self.shop.shelf)
 
-    def rib_cut(self) -> Cut:
+    def rib_cut(self, rib: Pose) -> Cut:
         """What a rib of the bay gets: its tongue and the hole of the lock screw.
 
-        Ribs stand square to the panel, so their x, y are x and z of the bay's frame.
+        Ribs stand square to the panel, so their x, y are x and z of the bay's frame, shifted by
+        what the leading edge sweeps between the rib and the motor.
         """
+        dx, dy, _ = (float(v) for v in rib.local(self.frame.origin))
         x0, x1, z0, z1 = self.tongue
         middle = (z0 + z1) / 2
         corner = 2.0
@@ -136,7 +139,8 @@ class MountShape:
         nose = Polygon(self._ring(0.0)[:, [0, 2]]).buffer(0.5)
         grown = outline.intersection(nose.union(box(x0 - 1, z0 - 1, 4.0, z1 + 1)))
         tab = max(getattr(grown, "geoms", [grown]), key=lambda g: g.area)
-        return Cut(circles=((self.lock_x_mm, middle, self.lock_hole_mm / 2),), tabs=(tab,))
+        hole = (self.lock_x_mm + dx, middle + dy, self.lock_hole_mm / 2)
+        return Cut(circles=(hole,), tabs=(translate(tab, dx, dy),))
 
     # ------------------------------------------------------------ thrust line
 

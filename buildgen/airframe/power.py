@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -62,9 +63,9 @@ class Drive:
         return tuple(MountShape(self.shop, self.power, b) for b in self.bays if self.power)
 
     @property
-    def rib_cuts(self) -> dict[int, tuple[Cut, ...]]:
-        """Tongues for the ribs of each bay."""
-        return {m.bay.index: (m.rib_cut(),) for m in self.mounts}
+    def rib_cuts(self) -> dict[int, Callable[[Pose], Cut]]:
+        """Tongues for the ribs of each bay, asked with the rib's frame."""
+        return {m.bay.index: m.rib_cut for m in self.mounts}
 
     # ------------------------------------------------------------ thrust lines
 
@@ -189,7 +190,10 @@ class Drive:
         size = power.motor.screw
         diameter = shelf.screw(size, "power.motor.screw").diameter_mm
         count = len(bolt_points(power.motor, self._pattern))
-        length = screw_length_mm(power.mount.plate_mm + ENGAGEMENT * diameter, size,
+        clamped = power.mount.plate_mm
+        if power.place == "nose" and self.shop.definition.fuselage:
+            clamped += self.shop.definition.fuselage.firewall_thickness_mm
+        length = screw_length_mm(clamped + ENGAGEMENT * diameter, size,
                                  "power.motor.screw", shelf)
         mass = count * screw_mass_g(size, length, shelf=shelf)
         at = Pose(origin=line.seat)

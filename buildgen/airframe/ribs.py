@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Iterable, Mapping
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 
 import numpy as np
@@ -33,6 +33,8 @@ class Place:
     bay: Bay | None = None
     single: bool = False
     """On the centre line, shared by both halves."""
+    against_inner: bool = False
+    """Its inner face lies on the plane in which the panel begins."""
 
 
 def places(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> list[Place]:
@@ -55,7 +57,8 @@ def _panel_places(shop: Shop, wing: WingShape, panel: Panel, bays: list[Bay]) ->
         found.append(Place(panel, end / 2, panel.along, end_wood, end, "centre rib", single=True))
     elif panel.index == 0 or break_in:
         found.append(Place(panel, end, panel.inner_normal, end_wood, end,
-                           "root rib" if panel.index == 0 else "rib at the break"))
+                           "root rib" if panel.index == 0 else "rib at the break",
+                           against_inner=True))
     for bay in bays:
         power = shop.definition.power
         assert power is not None
@@ -101,7 +104,7 @@ def _filled(
 
 def make_ribs(
     shop: Shop, wing: WingShape, bays: tuple[Bay, ...], members: tuple[Member, ...],
-    extra: Mapping[int, Iterable[Cut]] | None = None,
+    extra: Mapping[int, Callable[[Pose], Cut]] | None = None,
 ) -> tuple[list[Part], list[Joint]]:
     """Every rib of both halves with its joints.
 
@@ -116,8 +119,8 @@ def make_ribs(
             number += 1
         id_right = "R0" if place.single else f"R{number}R"
         blank = _blank(shop, place, id_right)
-        more = (extra or {}).get(place.bay.index, ()) if place.bay else ()
-        part = _cut_rib(shop, place, blank, members, tuple(more))
+        more = (extra[place.bay.index](blank.pose),) if extra and place.bay else ()
+        part = _cut_rib(shop, place, blank, members, more)
         parts.append(part)
         joints += [j for m in members if (j := m.joint(blank)) is not None]
         if not place.single:
@@ -128,6 +131,10 @@ def make_ribs(
 def _blank(shop: Shop, place: Place, id: str) -> Blank:
     """Outline at both faces; the smaller or the larger as the definition asks."""
     pose = place.panel.plane(place.face_mm, place.normal)
+    if place.against_inner:
+        start = place.panel.end_plane(False)
+        away = -place.thickness_mm * start.rotation[:, 2]
+        pose = Pose(start.rotation, start.origin + away)
     inner = Pose(pose.rotation, pose.origin + pose.rotation[:, 2] * place.thickness_mm)
     faces = [place.panel.outline(pose)]
     shifted = Polygon(pose.local(place.panel.ring(inner))[:, :2])

@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from dataclasses import dataclass, replace
 from functools import cached_property
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.interpolate import Akima1DInterpolator, CubicSpline
 
 Array = NDArray[np.float64]
 DENSE = 3001
@@ -103,6 +103,9 @@ def from_points(
     """
     step = np.sqrt(np.linalg.norm(np.diff(points, axis=0), axis=1))
     t = np.concatenate([[0.0], np.cumsum(step)])
+    # scipy takes most of a second to load: only sections from points need it
+    from scipy.interpolate import Akima1DInterpolator, CubicSpline
+
     curve = Akima1DInterpolator(t, points) if len(points) < COARSE else CubicSpline(t, points)
     nose = _foremost(curve, t)
     half = cosine(DENSE)
@@ -110,7 +113,7 @@ def from_points(
     return from_dense(name, source, np.asarray(curve(stations)), notes)
 
 
-def _foremost(curve: CubicSpline | Akima1DInterpolator, t: Array) -> float:
+def _foremost(curve: Callable[[Array], Array], t: Array) -> float:
     """Parameter of the least x."""
     low, high = t[0], t[-1]
     for _ in range(6):

@@ -20,6 +20,7 @@ from buildgen.solid import Array, Mirrored, Placed, Pose, Rod, Shape, Union, pri
 
 STEP = "Wing: ribs on the spars"
 BREAK = "Wing: panels joined"
+END_PLAY_MM = 0.2
 
 
 @dataclass(frozen=True, eq=False)
@@ -35,6 +36,8 @@ class SparRun:
     through: bool
     """It runs through to the other side in one piece."""
     piece: int
+    meet: Array
+    """Where its axis meets the plane of the break inboard of it; its tube ends short of it."""
 
     @property
     def key(self) -> str:
@@ -130,7 +133,7 @@ class Joiner:
         spar = self.outer.spar
         radius = _wire_radius(self.shop, spar, self.outer.key)
         reach = spar.joiner_mm
-        here = self.outer.a
+        here = self.outer.meet
         out = here + reach * self.outer.bar.axis
         back = out * (1, -1, 1) if self.inner is None else here - reach * self.inner.bar.axis
         arm = _rod(here, out, radius)
@@ -222,11 +225,33 @@ def _piece(
     if high - low < 1.0:
         return None
     a, b = (_place(wing, spar, s, run) for s in (low, high))
+    through = index == 0 and low == 0 and wing.flat_centre
+    way = (b - a) / np.linalg.norm(b - a)
+    if low == start and not through:
+        a = _onto(a, way, run[0].end_plane(False))
+    if high == end:
+        b = _onto(b, way, run[-1].end_plane(True))
+    short_a = 0.0 if through or low > start else _setback(spar, run[0].inner_normal, way)
+    last = run[-1].index == len(wing.panels) - 1
+    short_b = 0.0 if last or high < end else _setback(spar, run[-1].outer_normal, way)
     piece = SparRun(
-        shop, number, spar, run, a, b, index == 0 and low == 0 and wing.flat_centre, index
+        shop, number, spar, run, a + short_a * way, b - short_b * way, through, index, a
     )
     _stays_inside(piece, wing, low, high)
     return piece
+
+
+def _onto(point: Array, way: Array, plane: Pose) -> Array:
+    """The point slid along the spar into a plane."""
+    normal = plane.rotation[:, 2]
+    return np.asarray(point + way * float((plane.origin - point) @ normal) / float(way @ normal))
+
+
+def _setback(spar: Spar, normal: Array, way: Array) -> float:
+    """How far a square-ended spar stops short of a leaning plane, so that two of them meet."""
+    lean = float(np.arccos(np.clip(abs(normal @ way), 0.0, 1.0)))
+    half = max(spar.outer_mm or 0.0, spar.height_mm or 0.0, spar.width_mm or 0.0) / 2
+    return half * float(np.tan(lean)) + END_PLAY_MM
 
 
 def _place(wing: WingShape, spar: Spar, span: float, run: tuple[Panel, ...]) -> Array:
