@@ -13,7 +13,7 @@ from typing import TYPE_CHECKING, Literal, TypeAlias
 
 import numpy as np
 from shapely.affinity import scale
-from shapely.geometry import MultiPolygon, Polygon, box
+from shapely.geometry import Polygon, box
 
 from buildgen.solid import (
     Array,
@@ -374,7 +374,7 @@ def bent(outline: Polygon, thickness_mm: float, bend: Bend) -> Union:
     low_y, high_y = outline.bounds[1] - 1, outline.bounds[3] + 1
     for start, end in pairwise(bend.flat_mm):
         clipped = outline.intersection(box(start, low_y, end, high_y))
-        for piece in clipped.geoms if isinstance(clipped, MultiPolygon) else [clipped]:
+        for piece in getattr(clipped, "geoms", [clipped]):
             if isinstance(piece, Polygon) and piece.area > 1e-6:
                 legs.append(_leg(piece, thickness_mm, bend, float(start + end) / 2))
     return Union(tuple(legs))

@@ -15,7 +15,7 @@ from typing import Any, TypeAlias
 
 import numpy as np
 import shapely
-from manifold3d import CrossSection, FillRule, Manifold, Mesh, triangulate
+from manifold3d import CrossSection, FillRule, Manifold, Mesh64, triangulate
 from numpy.typing import NDArray
 from shapely.geometry import MultiPolygon, Polygon
 from shapely.geometry.polygon import orient
@@ -333,9 +333,9 @@ def _cap(points: Array) -> NDArray[np.int64]:
 
 
 def _from_triangles(vertices: Array, faces: NDArray[np.int64]) -> Manifold:
-    data = Mesh(
-        vert_properties=np.ascontiguousarray(vertices, np.float32),
-        tri_verts=np.ascontiguousarray(faces, np.uint32),
+    data = Mesh64(
+        vert_properties=np.ascontiguousarray(vertices, np.float64),
+        tri_verts=np.ascontiguousarray(faces, np.uint64),
     )
     data.merge()
     return Manifold(data)
@@ -343,7 +343,7 @@ def _from_triangles(vertices: Array, faces: NDArray[np.int64]) -> Manifold:
 
 def triangles(solid: Manifold) -> tuple[Array, NDArray[np.int64]]:
     """Vertices (n, 3) in mm and faces (m, 3) of a mesh."""
-    data = solid.to_mesh()
+    data = solid.to_mesh64()
     return (
         np.asarray(data.vert_properties, float)[:, :3],
         np.asarray(data.tri_verts, np.int64),

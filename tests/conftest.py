@@ -1,0 +1,32 @@
+"""Kits of the shipped designs, each built once for all tests."""
+
+from __future__ import annotations
+
+from functools import lru_cache
+
+import pytest
+
+from buildgen import Build, build, load
+from buildgen.design import shipped_designs
+
+
+@lru_cache(maxsize=None)
+def shipped_kit(name: str) -> Build:
+    """The kit of a shipped design."""
+    return build(load(name))
+
+
+@pytest.fixture(params=shipped_designs())
+def kit(request: pytest.FixtureRequest) -> Build:
+    """Every shipped kit in turn."""
+    return shipped_kit(request.param)
+
+
+@pytest.fixture(scope="session")
+def marram() -> Build:
+    return shipped_kit("marram")
+
+
+@pytest.fixture(scope="session")
+def sedge() -> Build:
+    return shipped_kit("sedge")
