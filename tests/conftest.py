@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from functools import lru_cache
+from functools import cache
 
 import pytest
 
@@ -10,7 +10,7 @@ from buildgen import Build, build, load
 from buildgen.design import shipped_designs
 
 
-@lru_cache(maxsize=None)
+@cache
 def shipped_kit(name: str) -> Build:
     """The kit of a shipped design."""
     return build(load(name))

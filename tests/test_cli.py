@@ -28,11 +28,11 @@ def said(capsys: pytest.CaptureFixture[str], *argv: str) -> tuple[int, str, str]
         ('section = "clarky"', 'section = "clarkx"', 7, 'Did you mean "clarky"?'),
         ("outer_mm = 6", "outer_mm = 60", 22, "does not lie inside the section"),
         ("span_mm = 450", 'span_mm = "450"', 12, "without quotes"),
-        ('kind = "tube"', 'kind = "tubbe"', 20, 'Did you mean "tube"?'),
+        ('kind = "tube"', 'kind = "tubbe"', 19, 'Did you mean "tube"?'),
         ("dihedral_deg = 5", "dihedral_deg = 5\n[[wing.panel]]\nspan_mm = 99\nroot_chord_mm = 99",
          19, "do not meet"),
-        ('pattern = "16x16"', 'pattern = "17x17"', 34, '"17x17"'),
-        ('material = "balsa-light"', 'material = "balsa-lite"', 67, "balsa-light"),
+        ('pattern = "16x16"', 'pattern = "17x17"', 35, '"17x17"'),
+        ('material = "balsa-light"', 'material = "balsa-lite"', 68, "balsa-light"),
     ],
 )
 def test_a_slip_in_a_definition_is_told_with_its_line(
@@ -61,7 +61,7 @@ def test_all_faults_are_told_at_once(
     )
     status, _, err = said(capsys, "check", str(path))
     assert status == 2
-    assert [row.split(":")[1] for row in err.strip().splitlines()] == ["14", "21", "66"]
+    assert [row.split(":")[1] for row in err.strip().splitlines()] == ["14", "20", "67"]
 
 
 @pytest.mark.parametrize("kind", ["missing", "folder", "not toml", "binary", "unknown name"])

@@ -15,6 +15,7 @@ from buildgen.airframe.ribs import make_ribs
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape, shape_wing
 from buildgen.airframe.tail import SheetTail
+from buildgen.airframe.woods import check_materials
 from buildgen.design.schema import Definition, Wing
 from buildgen.part import Joint, Kit, Part, Title
 from buildgen.problems import DesignError, Problem
@@ -66,6 +67,7 @@ def shape_airframe(
 ) -> Airframe:
     """Place everything in space; raises DesignError for what cannot be."""
     shop = Shop(definition, shelf)
+    check_materials(shop)
     wing = shape_wing(definition.wing, find_sections(definition.wing, folders))
     body = Body(shop, wing, definition.fuselage) if definition.fuselage else None
     tail = SheetTail(shop, wing, body, definition.tail) if definition.tail else None

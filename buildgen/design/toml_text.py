@@ -136,7 +136,7 @@ def _slip(here: str, message: str) -> str:
     return _value_slip(key, value)
 
 
-def _value_slip(key: str, value: str) -> str:
+def _value_slip(key: str, value: str) -> str:  # noqa: C901 - one branch for each slip
     """A hint for what stands after the equals sign."""
     value = value.split("#")[0].strip()
     if not value:

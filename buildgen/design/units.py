@@ -23,7 +23,9 @@ ENDINGS: Mapping[str, tuple[str, Fraction]] = {
 }
 
 # No more digits than any measure has: text is not a way to write endless numbers.
-_FRACTION = re.compile(r"([+-]?)\s*(?:(\d{1,9})(?:\s+|\s*-\s*))?(\d{1,9})\s*/\s*(\d{1,9})", re.ASCII)
+_FRACTION = re.compile(
+    r"([+-]?)\s*(?:(\d{1,9})(?:\s+|\s*-\s*))?(\d{1,9})\s*/\s*(\d{1,9})", re.ASCII
+)
 _DECIMAL = re.compile(r"[+-]?(\d{1,9}(\.\d{0,15})?|\.\d{1,15})", re.ASCII)
 
 

@@ -226,7 +226,8 @@ def _flag(fault: Fault) -> Said:
 def _text(fault: Fault) -> Said:
     says = f"{shown(fault.value)} stands where text belongs."
     if isinstance(fault.value, (int, float)):
-        return says, f"Put it in quotes: {_assigned(fault, chr(34) + shown(fault.value) + chr(34))}."
+        quoted = f'"{shown(fault.value)}"'
+        return says, f"Put it in quotes: {_assigned(fault, quoted)}."
     return says, "Give text in quotes."
 
 

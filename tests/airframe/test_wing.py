@@ -50,7 +50,9 @@ def test_left_parts_mirror_right_ones(kit: Build) -> None:
             continue
         other = kit.by_id[part.id[:-1] + "L"]
         assert other.mass_g == pytest.approx(part.mass_g, rel=1e-6), part.id
-        assert other.centroid_mm == pytest.approx(part.centroid_mm * (1, -1, 1), abs=1e-3)
+        # ruled faces are split along one diagonal: facets of prints and bent sheets differ
+        facet = {"print": 0.05, "cut": 0.005}.get(part.process, 1e-3)
+        assert other.centroid_mm == pytest.approx(part.centroid_mm * (1, -1, 1), abs=facet)
         if part.solid is not None and other.solid is not None:
             a, b = part.solid.bounding_box(), other.solid.bounding_box()
             assert (-b[4], -b[1]) == pytest.approx((a[1], a[4]), abs=1e-3), part.id
