@@ -51,7 +51,7 @@ def naca(designation: str, closed: bool = False) -> Section:
     x = cosine(DENSE)
     half = _modified(x, thick, int(nose), int(place), designation) if nose else _half(
         x, thick, closed)
-    mean, slope = _mean_four(x, digits) if len(digits) == 4 else _mean_five(x, digits)
+    mean, slope = mean_line(digits, x)
     angle = np.arctan(slope)
     upper = np.column_stack([x - half * np.sin(angle), mean + half * np.cos(angle)])
     lower = np.column_stack([x + half * np.sin(angle), mean - half * np.cos(angle)])
@@ -69,7 +69,7 @@ def _half(x: Array, thick: float, closed: bool) -> Array:
     )
 
 
-# Slope factor d1 of the aft part by the place of greatest thickness (TR 492, table).
+# d1 of the aft part over the thickness, by the place of greatest thickness (TR 492, table).
 AFT_SLOPE = {2: 1.000, 3: 1.170, 4: 1.575, 5: 2.325, 6: 3.500}
 
 
@@ -85,7 +85,7 @@ def _modified(x: Array, thick: float, nose: int, place: int, name: str) -> Array
                     f"Allowed last digits: {', '.join(map(str, AFT_SLOPE))}.")
         )
     m, t = place / 10, thick
-    d0, d1 = 0.01 * t, AFT_SLOPE[place] * t * 0.2
+    d0, d1 = 0.01 * t, AFT_SLOPE[place] * t
     gap = 1 - m
     system = np.array([[gap**2, gap**3], [-2 * gap, -3 * gap**2]])
     d2, d3 = np.linalg.solve(system, [t / 2 - d0 - d1 * gap, d1])
@@ -99,6 +99,12 @@ def _modified(x: Array, thick: float, nose: int, place: int, name: str) -> Array
     ahead = a0 * np.sqrt(x) + a1 * x + a2 * x**2 + a3 * x**3
     behind = d0 + d1 * (1 - x) + d2 * (1 - x) ** 2 + d3 * (1 - x) ** 3
     return np.asarray(np.where(x < m, ahead, behind))
+
+
+def mean_line(designation: str, x: Array) -> tuple[Array, Array]:
+    """Mean line and its slope at fractions of the chord, four- or five-digit."""
+    digits = re.sub(r"\D", "", designation.split("-")[0])
+    return _mean_four(x, digits) if len(digits) == 4 else _mean_five(x, digits)
 
 
 def _mean_four(x: Array, digits: str) -> tuple[Array, Array]:
