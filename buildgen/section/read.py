@@ -117,8 +117,8 @@ def _counts(rows: list[Row], file: str) -> tuple[tuple[int, int] | None, list[Ro
     if int(a + b) == len(rows) - 1:
         return (int(a), int(b)), rows[1:]
     if max(x for _, (x, _) in rows[1:]) <= 1.5:
-        raise _fault(file, number, f"the counts announce {a:g} and {b:g} points, {len(rows) - 1} follow.",
-                     "Mend the counts or the rows.")
+        says = f"the counts announce {a:g} and {b:g} points, {len(rows) - 1} follow."
+        raise _fault(file, number, says, "Mend the counts or the rows.")
     return None, rows
 
 

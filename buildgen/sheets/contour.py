@@ -82,7 +82,7 @@ def _ring(coords: object, clockwise: bool) -> Array:
     points = points[edges > LEAST_EDGE_MM]
     area = float(np.dot(points[:, 0], np.roll(points[:, 1], -1))
                  - np.dot(np.roll(points[:, 0], -1), points[:, 1]))
-    return points[::-1] if (area < 0) != clockwise else points
+    return np.asarray(points[::-1] if (area < 0) != clockwise else points)
 
 
 def moved_points(points: Array, x: float, y: float, angle_deg: float, flipped: bool) -> Array:

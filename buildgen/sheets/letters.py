@@ -61,7 +61,8 @@ def _read(code: str) -> tuple[Stroke, ...]:
 @lru_cache(maxsize=512)
 def glyph(letter: str) -> tuple[tuple[Stroke, ...], float]:
     """Strokes of one letter on the grid, and its scale (small capitals are smaller)."""
-    base, *marks = unicodedata.normalize("NFD", letter)
+    spread = unicodedata.normalize("NFD", letter)
+    base, marks = spread[0], spread[1:]
     scale = SMALL if base.islower() else 1.0
     code = GLYPHS.get(base.upper(), MISSING)
     strokes = list(_read(code))

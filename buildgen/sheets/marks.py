@@ -22,10 +22,10 @@ def strokes_of(part: Part, height_mm: float) -> tuple[list[Stroke], bool]:
         strokes += _strokes(mark)
     if any(m.text == part.id for m in part.form.marks):
         return strokes, True
-    mark = id_mark(part, height_mm)
-    if mark is None:
+    found = id_mark(part, height_mm)
+    if found is None:
         return strokes, False
-    return strokes + _strokes(mark), True
+    return strokes + _strokes(found), True
 
 
 def _strokes(mark: Mark) -> list[Stroke]:

@@ -42,7 +42,7 @@ FORMS: dict[str, Callable[[], bytes]] = {
     "crlf": lambda: f"NACA\n{rows(POINTS)}\n".replace("\n", "\r\n").encode(),
     "cr cr lf": lambda: f"NACA\n{rows(POINTS)}\n".replace("\n", "\r\r\n").encode(),
     "no newline at the end": lambda: f"NACA\n{rows(POINTS)}".encode(),
-    "tabs": lambda: f"NACA\n{rows(POINTS, chr(9) + '{:.6f}' + chr(9) + '{:.6f}' + chr(9))}".encode(),
+    "tabs": lambda: f"NACA\n{rows(POINTS, '~{:.6f}~{:.6f}~')}".replace("~", chr(9)).encode(),
     "commas": lambda: f"NACA\n{rows(POINTS, '{:.6f},{:.6f}')}".encode(),
     "semicolons": lambda: f"NACA\n{rows(POINTS, '{:.6f}; {:.6f}')}".encode(),
     "brackets": lambda: f"NACA\n{rows(POINTS, '{:.6f} ({:.6f})')}".encode(),

@@ -1,0 +1,45 @@
+"""Cut sheets read by an independent program: GDAL's DXF driver, through pyogrio."""
+
+from __future__ import annotations
+
+from pathlib import Path
+
+import numpy as np
+import pytest
+import shapely
+from pyogrio.raw import read as gdal_read
+from shapely.geometry import Polygon
+
+from buildgen.sheets.contour import CHORD_ERROR_MM
+from buildgen.sheets.dxf import sheet_dxf
+from tests.sheets.test_sheets import QUICK, laid
+
+
+def gdal_lines(path: Path) -> list[tuple[str, shapely.Geometry]]:
+    """(layer, geometry) of every entity as GDAL sees it."""
+    meta, _, geometry, fields = gdal_read(path, encoding="utf-8")
+    layers = fields[list(meta["fields"]).index("Layer")]
+    return list(zip(layers, shapely.from_wkb(geometry), strict=True))
+
+
+@pytest.mark.parametrize("name", ["marram", "samphire", "sedge"])
+def test_gdal_sees_the_same_closed_areas_in_the_same_places(name: str, tmp_path: Path) -> None:
+    kit, sheets = laid(name)
+    for sheet in sheets:
+        path = tmp_path / f"{sheet.file}.dxf"
+        path.write_text(sheet_dxf(sheet, kit, QUICK))
+        found = gdal_lines(path)
+        outside = [Polygon(g.coords) for layer, g in found if layer == "CUT_OUTSIDE"]
+        assert len(outside) == len(sheet.parts)
+        nominal = sheet.placed_shapes()
+        for cut, part, shape in zip(outside, sheet.parts, nominal, strict=True):
+            whole = Polygon(shape.exterior)
+            left = cut.buffer(-sheet.kerf_mm / 2, join_style="mitre")
+            # a curve cut with chord error e loses 2/3 e of area along its length (parabola)
+            loss = 2 / 3 * CHORD_ERROR_MM * whole.exterior.length
+            assert abs(left.area - whole.area) < loss, part.id
+            assert np.asarray(left.centroid.coords[0]) == pytest.approx(
+                np.asarray(whole.centroid.coords[0]), abs=0.01), part.id
+        inside = [g for layer, g in found if layer == "CUT_INSIDE"]
+        assert len(inside) == sum(len(c.inside) + len(c.circles) for c in sheet.paths)
+        assert all(g.is_ring for g in inside)
