@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import math
 from dataclasses import dataclass
 from functools import cached_property
 from itertools import combinations
@@ -14,7 +15,14 @@ from buildgen.part import Kit, Part, Plate
 from buildgen.problems import DesignError, Problem
 from buildgen.sheets.contour import Contours, beam_path
 from buildgen.sheets.nest import nest
-from buildgen.sheets.nest_types import NestLayout, NestPart, NestPlacement, NestStock, placed
+from buildgen.sheets.nest_types import (
+    NestLayout,
+    NestPart,
+    NestPlacement,
+    NestResult,
+    NestStock,
+    placed,
+)
 from buildgen.shelf import Material, Shelf
 
 ANY_WAY = (0.0, 90.0, 180.0, 270.0)
@@ -133,8 +141,7 @@ def _group(
         for p in parts if isinstance(p.form, Plate)
     ]
     try:
-        result = nest(given, stock, spacing_mm=laser.spacing_mm, margin_mm=laser.margin_mm,
-                      effort=laser.effort)
+        result = _nested(given, stock, laser)
     except DesignError as error:
         by_id = {p.id: p for p in parts}
         raise DesignError(*(_named(p, by_id, material) for p in error.problems)) from None
@@ -143,6 +150,23 @@ def _group(
         _sheet(layout, n, material, thickness, kerf, {p.id: p for p in parts}, laser)
         for n, layout in enumerate(result.layouts, start=1)
     ]
+
+
+def _nested(parts: list[NestPart], stock: list[NestStock], laser: Laser) -> NestResult:
+    """A quick layout; a longer search only where it could save a whole sheet."""
+    gap, edge = laser.spacing_mm, laser.margin_mm
+    quick = nest(parts, stock, spacing_mm=gap, margin_mm=edge, effort="quick")
+    if laser.effort == "quick" or len(quick.layouts) <= _least_sheets(parts, stock[0], laser):
+        return quick
+    return nest(parts, stock, spacing_mm=gap, margin_mm=edge, effort=laser.effort)
+
+
+def _least_sheets(parts: list[NestPart], stock: NestStock, laser: Laser) -> int:
+    """No layout takes fewer: parts grown by half the spacing against the usable sheet."""
+    half = laser.spacing_mm / 2
+    room = 2 * laser.margin_mm - laser.spacing_mm
+    usable = (stock.width_mm - room) * (stock.height_mm - room)
+    return max(1, math.ceil(sum(p.polygon.buffer(half).area for p in parts) / usable - 1e-9))
 
 
 def _named(problem: Problem, by_id: dict[str, Part], material: Material) -> Problem:

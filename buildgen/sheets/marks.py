@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from functools import lru_cache
+
 import numpy as np
 from shapely.geometry import Polygon
 
@@ -39,6 +41,7 @@ def _strokes(mark: Mark) -> list[Stroke]:
     return strokes
 
 
+@lru_cache(maxsize=2048)
 def id_mark(part: Part, height_mm: float) -> Mark | None:
     """The part's id at the largest height that fits inside; None below the least readable."""
     assert isinstance(part.form, Plate)
