@@ -170,7 +170,7 @@ def apply(outline: Polygon, cuts: Iterable[Cut], least_mm2: float = 1.0) -> tupl
     if holes:
         body = body.difference(shapely.union_all(holes))
     true: list[Circle] = []
-    for x, y, r in (c for cut in cuts for c in cut.circles):
+    for x, y, r in _distinct(c for cut in cuts for c in cut.circles):
         disc = Point(x, y).buffer(r, quad_segs=ARC)
         edge = body.boundary.distance(Point(x, y)) if not body.is_empty else 0.0
         if body.contains(disc) and edge > r + 1e-6:
@@ -183,6 +183,17 @@ def apply(outline: Polygon, cuts: Iterable[Cut], least_mm2: float = 1.0) -> tupl
     largest = max(pieces, key=lambda p: p.area)
     kept = tuple(c for c in true if largest.contains(Point(c[0], c[1])))
     return cleaned(largest), kept, tuple(m for c in cuts for m in c.marks)
+
+
+def _distinct(circles: Iterable[Circle]) -> list[Circle]:
+    """Circles asked for twice count once; of two about one centre the larger."""
+    found: list[Circle] = []
+    for x, y, r in circles:
+        same = [c for c in found if np.hypot(x - c[0], y - c[1]) < 0.05]
+        if same and same[0][2] >= r:
+            continue
+        found = [c for c in found if c not in same] + [(x, y, r)]
+    return found
 
 
 def cleaned(shape: Polygon) -> Polygon:

@@ -150,7 +150,8 @@ def _blank(shop: Shop, place: Place, id: str) -> Blank:
 def _cut_rib(
     shop: Shop, place: Place, blank: Blank, members: tuple[Member, ...], more: tuple[Cut, ...]
 ) -> Part:
-    cuts = [m.cut(blank) for m in members] + list(more)
+    faces = (blank, _other_side(blank)) if place.single else (blank,)
+    cuts = [m.cut(face) for m in members for face in faces] + list(more)
     outline, circles, marks = apply(blank.outline, cuts)
     _still_whole(place, outline, blank)
     ribs = shop.definition.wing.ribs
@@ -167,6 +168,12 @@ def _cut_rib(
         blank.id, f"{place.why}{side}", place.material, nominal, outline, blank.pose, STEP, key,
         circles=circles, grain_deg=0.0, marks=marks,
     )
+
+
+def _other_side(blank: Blank) -> Blank:
+    """A rib on the centre line as the other half meets it."""
+    lift = Pose(origin=np.array([0.0, 0.0, blank.thickness_mm]))
+    return Blank(blank.id, lift.then(blank.pose).mirrored(2), blank.thickness_mm, blank.outline)
 
 
 def _nominal(shop: Shop, place: Place) -> float:

@@ -166,7 +166,8 @@ def _least_sheets(parts: list[NestPart], stock: NestStock, laser: Laser) -> int:
     half = laser.spacing_mm / 2
     room = 2 * laser.margin_mm - laser.spacing_mm
     usable = (stock.width_mm - room) * (stock.height_mm - room)
-    return max(1, math.ceil(sum(p.polygon.buffer(half).area for p in parts) / usable - 1e-9))
+    grown = float(sum(p.polygon.buffer(half).area for p in parts))
+    return max(1, math.ceil(grown / usable - 1e-9))
 
 
 def _named(problem: Problem, by_id: dict[str, Part], material: Material) -> Problem:

@@ -21,6 +21,8 @@ from buildgen.solid import Array, Mirrored, Placed, Pose, Rod, Shape, Union, pri
 STEP = "Wing: ribs on the spars"
 BREAK = "Wing: panels joined"
 END_PLAY_MM = 0.2
+ONE_PIECE_MM = 3.0
+"""Halves of a spar that differ by less at root and tip are made in one straight piece."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -93,10 +95,8 @@ class SparRun:
         name = f"spar {self.number}, {self.spar.place}" if not self.round else f"spar {self.number}"
         length = float(np.linalg.norm(self.b - self.a))
         if self.through:
-            left = self.a * (1, -1, 1) if abs(self.a[1]) > 1e-6 else self.b * (1, -1, 1)
-            if abs(self.a[1]) < 1e-6 and abs(self.a[0] - self.b[0]) < 1e-6:
-                both = self._shape(left, self.b)
-                return (self._stick(f"S{self.letter}", name + ", in one piece", both, 2 * length),)
+            both = self._shape(self.b * (1, -1, 1), self.b)
+            return (self._stick(f"S{self.letter}", name + ", in one piece", both, 2 * length),)
         right = self._stick(
             f"SR{self.letter}", name + ", right", self._shape(self.a, self.b), length
         )
@@ -225,7 +225,9 @@ def _piece(
     if high - low < 1.0:
         return None
     a, b = (_place(wing, spar, s, run) for s in (low, high))
-    through = index == 0 and low == 0 and wing.flat_centre
+    through = index == 0 and low == 0 and wing.flat_centre and _in_line(a, b)
+    if through:
+        a, b = _straightened(a, b)
     way = (b - a) / np.linalg.norm(b - a)
     if low == start and not through:
         a = _onto(a, way, run[0].end_plane(False))
@@ -239,6 +241,17 @@ def _piece(
     )
     _stays_inside(piece, wing, low, high)
     return piece
+
+
+def _in_line(a: Array, b: Array) -> bool:
+    """Both halves nearly in one straight line through the middle."""
+    return bool(np.abs((a - b)[[0, 2]]).max() < ONE_PIECE_MM)
+
+
+def _straightened(a: Array, b: Array) -> tuple[Array, Array]:
+    """The ends of a spar in one piece: square to the middle, half way between its two ends."""
+    x, _, z = (a + b) / 2
+    return np.array([x, a[1], z]), np.array([x, b[1], z])
 
 
 def _onto(point: Array, way: Array, plane: Pose) -> Array:
