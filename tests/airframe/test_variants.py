@@ -60,7 +60,8 @@ VARIANTS = {
                 'place = "bottom"'},
     "a spar that ends": {"spar": "outer_mm = 8\ninner_mm = 6\nto_mm = 260"},
     "round nose": {"wing": '[wing.leading_edge]\nkind = "round"\nmaterial = "dowel"\nsize_mm = 6'},
-    "no sticks": {"wing": '[wing.leading_edge]\nkind = "none"\n[wing.trailing_edge]\nkind = "none"'},
+    "no sticks": {
+        "wing": '[wing.leading_edge]\nkind = "none"\n[wing.trailing_edge]\nkind = "none"'},
     "ribs by count": {"panel": "tip_chord_mm = 150\nrib_count = 6"},
     "larger edges": {"wing": '[wing.ribs]\nedges = "larger"'},
     "measured in inches": {"panel": 'tip_chord_in = "6 1/8"\nsweep_in = "1/2"'},
