@@ -10,10 +10,14 @@ from shapely.geometry import Point, Polygon
 from buildgen.part import Part, Plate
 from buildgen.problems import DesignError, Problem
 from buildgen.sheets.letters import Stroke
+from buildgen.sheets.thin import thinned
 from buildgen.solid import Array, Circle
 
-CHORD_ERROR_MM = 0.01
+CHORD_ERROR_MM = 0.005
+"""Between the beam's path and its curve, either way; half of what can be seen or felt."""
 LEAST_EDGE_MM = 0.002
+CLOSED_MM = 0.01
+"""Half a closed notch's least width, and in mm2 its least area, that counts as one."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -41,11 +45,14 @@ class Contours:
         return straight + sum(2 * np.pi * r for _, _, r in self.circles)
 
 
-def beam_path(part: Part, kerf_mm: float) -> Contours:
+def beam_path(part: Part, kerf_mm: float, chord_mm: float = CHORD_ERROR_MM) -> Contours:
     """The path of the beam's middle that leaves the nominal part.
 
+    Args:
+        chord_mm: how far the path may leave its curve; 0 keeps every point of the outline.
+
     Raises:
-        DesignError: a hole is too small for the beam.
+        DesignError: a hole or notch is too narrow for the beam, with its place.
     """
     assert isinstance(part.form, Plate)
     plate = part.form
@@ -53,31 +60,37 @@ def beam_path(part: Part, kerf_mm: float) -> Contours:
     grown = plate.outline.buffer(half, join_style="mitre", mitre_limit=3.0) if half else (
         plate.outline
     )
-    if not isinstance(grown, Polygon) or len(grown.interiors) < len(plate.outline.interiors):
-        raise DesignError(_too_fine(part, kerf_mm))
+    closed = grown.buffer(-half, join_style="mitre", mitre_limit=3.0).difference(
+        plate.outline.buffer(CLOSED_MM)
+    )
+    if not isinstance(grown, Polygon) or closed.area > CLOSED_MM:
+        spot = (closed if closed.area > CLOSED_MM else plate.outline).representative_point()
+        raise DesignError(_too_fine(part, kerf_mm, (spot.x, spot.y)))
     circles = []
     for x, y, r in plate.circles:
         if r <= half:
-            raise DesignError(_too_fine(part, kerf_mm))
+            raise DesignError(_too_fine(part, kerf_mm, (x, y)))
         circles.append((x, y, r - half))
     return Contours(
-        _ring(grown.exterior.coords, clockwise=False),
-        tuple(_ring(i.coords, clockwise=True) for i in grown.interiors),
+        _ring(grown.exterior.coords, False, chord_mm),
+        tuple(_ring(i.coords, True, chord_mm) for i in grown.interiors),
         tuple(circles),
     )
 
 
-def _too_fine(part: Part, kerf_mm: float) -> Problem:
+def _too_fine(part: Part, kerf_mm: float, at: tuple[float, float]) -> Problem:
     return Problem(
         part.from_key, f"Part {part.id} has a hole or slot narrower than the beam of"
-        f" {kerf_mm:g} mm.", "Make the hole larger, or state a smaller kerf_mm if you measured it.",
+        f" {kerf_mm:g} mm at x = {at[0]:.1f}, y = {at[1]:.1f} mm of the part.",
+        "Make the hole larger, or state a smaller kerf_mm if you measured it.",
     )
 
 
-def _ring(coords: object, clockwise: bool) -> Array:
-    """Thinned to the chord error, closed without a repeated point, no zero-length edge."""
-    thin = Polygon(coords).simplify(CHORD_ERROR_MM * 0.9, preserve_topology=True)
-    points = np.asarray(thin.exterior.coords)[:-1]
+def _ring(coords: object, clockwise: bool, chord_mm: float) -> Array:
+    """Thinned within the chord error, closed without a repeated point, no zero-length edge."""
+    whole = Polygon(coords)
+    points = np.asarray(whole.exterior.coords)[:-1]
+    points = thinned(points, chord_mm) if chord_mm else points
     edges = np.linalg.norm(points - np.roll(points, 1, axis=0), axis=1)
     points = points[edges > LEAST_EDGE_MM]
     area = float(np.dot(points[:, 0], np.roll(points[:, 1], -1))

@@ -7,11 +7,14 @@ from dataclasses import dataclass
 import numpy as np
 
 from buildgen.design.schema import Laser
-from buildgen.part import Kit
-from buildgen.sheets.contour import Contours, moved, moved_strokes
-from buildgen.sheets.layout import Sheet
+from buildgen.part import Kit, Part
+from buildgen.sheets.arcs import Bulges, with_arcs
+from buildgen.sheets.bridges import bridged
+from buildgen.sheets.contour import Contours, beam_path, moved, moved_strokes
 from buildgen.sheets.letters import write
 from buildgen.sheets.marks import strokes_of
+from buildgen.sheets.order import guests_of
+from buildgen.sheets.sheet import Placement, Sheet
 from buildgen.solid import Array
 
 CUT_INSIDE, CUT_OUTSIDE, SCORE, MARK, SHEET = (
@@ -30,6 +33,12 @@ class Piece:
     path: Contours
     strokes: tuple[Array, ...]
     id_inside: bool
+    outside: tuple[Array, ...] = ()
+    """The outside in pieces, with bridges between them; empty where it is cut whole."""
+    arcs: tuple[Bulges, ...] = ()
+    """Outside and insides with arcs, in this order; empty where lines are asked for."""
+    guest: bool = False
+    """It lies in the opening of another part, and is cut with the insides, before that one."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -55,20 +64,42 @@ def colours(laser: Laser) -> dict[str, int]:
 
 def draw(sheet: Sheet, kit: Kit, laser: Laser) -> Drawing:
     """Everything on a sheet where it lies."""
-    pieces = []
-    for part, at, path in zip(sheet.parts, sheet.placements, sheet.paths, strict=True):
-        place = (at.x_mm, at.y_mm, at.rotation_deg, at.flipped)
-        strokes, inside = strokes_of(part, laser.letter_mm)
-        marks = moved_strokes(strokes, *place)
-        put = moved(path, *place)
-        if not inside:
-            marks += _beside(part.id, put)
-        pieces.append(Piece(part.id, put, tuple(marks), inside))
+    guests = guests_of(sheet.placed_shapes())
+    pieces = [
+        _piece(part, at, moved(path, *_place(at)), sheet, laser, n in guests)
+        for n, (part, at, path) in enumerate(
+            zip(sheet.parts, sheet.placements, sheet.paths, strict=True))
+    ]
     w, h = sheet.width_mm, sheet.height_mm
     words = (f"{kit.title.line}  {sheet.file}  {sheet.material} {sheet.thickness_mm:g} mm"
              f"  kerf {sheet.kerf_mm:g} mm")
     title = [np.array(s) for s in write(words, TITLE_MM, (0.0, h + 2.0), "start")]
-    return Drawing(np.array([(0, 0), (w, 0), (w, h), (0, h)], float), tuple(title), tuple(pieces))
+    outline = np.array([(0, 0), (w, 0), (w, h), (0, h)], float)
+    if sheet.offcut is not None:
+        outline = np.asarray(sheet.offcut.exterior.coords)[:-1]
+    return Drawing(outline, tuple(title), tuple(pieces))
+
+
+def _place(at: Placement) -> tuple[float, float, float, bool]:
+    return at.x_mm, at.y_mm, at.rotation_deg, at.flipped
+
+
+def _piece(
+    part: Part, at: Placement, path: Contours, sheet: Sheet, laser: Laser, guest: bool
+) -> Piece:
+    """One part where it lies."""
+    strokes, inside = strokes_of(part, laser.letter_mm, at.label, laser.grain_arrows)
+    marks = moved_strokes(strokes, *_place(at))
+    if not inside:
+        marks += _beside(at.label, path)
+    runs: tuple[Array, ...] = ()
+    arcs: tuple[Bulges, ...] = ()
+    if laser.bridges:
+        runs = bridged(path.outside, laser.bridges, laser.bridge_mm + sheet.kerf_mm)
+    elif laser.arc_mm:
+        fine = moved(beam_path(part, sheet.kerf_mm, 0.0), *_place(at))
+        arcs = tuple(with_arcs(ring, laser.arc_mm) for ring in (fine.outside, *fine.inside))
+    return Piece(at.label, path, tuple(marks), inside, runs, arcs, guest)
 
 
 def _beside(id: str, path: Contours) -> list[Array]:

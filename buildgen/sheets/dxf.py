@@ -7,6 +7,7 @@ from typing import Any
 
 from buildgen.design.schema import Laser
 from buildgen.part import Kit
+from buildgen.sheets.arcs import Bulges
 from buildgen.sheets.drawing import (
     CUT_INSIDE,
     CUT_OUTSIDE,
@@ -14,14 +15,16 @@ from buildgen.sheets.drawing import (
     MARK,
     SHEET,
     Drawing,
+    Piece,
     colours,
     draw,
 )
-from buildgen.sheets.layout import Sheet
+from buildgen.sheets.sheet import Sheet
 from buildgen.solid import Array
 
 MILLIMETRES = 4
 PLACES = 4
+BULGE_PLACES = 8
 
 
 def sheet_dxf(sheet: Sheet, kit: Kit, laser: Laser) -> str:
@@ -59,12 +62,32 @@ def _fill(space: Any, drawing: Drawing, old: bool) -> None:
         for stroke in piece.strokes:
             _line(space, stroke, MARK, old, False)
     for piece in drawing.pieces:
-        for x, y, r in piece.path.circles:
-            space.add_circle((round(x, PLACES), round(y, PLACES)), round(r, PLACES),
-                             dxfattribs={"layer": CUT_INSIDE})
-        for ring in piece.path.inside:
-            _line(space, ring, CUT_INSIDE, old, True)
-        _line(space, piece.path.outside, CUT_OUTSIDE, old, True)
+        _piece(space, piece, old)
+
+
+def _piece(space: Any, piece: Piece, old: bool) -> None:
+    """A part's circles and openings, then its outside."""
+    last = CUT_INSIDE if piece.guest else CUT_OUTSIDE
+    for x, y, r in piece.path.circles:
+        space.add_circle((round(x, PLACES), round(y, PLACES)), round(r, PLACES),
+                         dxfattribs={"layer": CUT_INSIDE})
+    if piece.arcs:
+        for ring in piece.arcs[1:]:
+            _arcs(space, ring, CUT_INSIDE, old)
+        _arcs(space, piece.arcs[0], last, old)
+        return
+    for inside in piece.path.inside:
+        _line(space, inside, CUT_INSIDE, old, True)
+    for run in piece.outside:
+        _line(space, run, last, old, False)
+    if not piece.outside:
+        _line(space, piece.path.outside, last, old, True)
+
+
+def _arcs(space: Any, ring: Bulges, layer: str, old: bool) -> None:
+    rounded = [(round(x, PLACES), round(y, PLACES), round(b, BULGE_PLACES)) for x, y, b in ring]
+    add = space.add_polyline2d if old else space.add_lwpolyline
+    add(rounded, format="xyb", close=True, dxfattribs={"layer": layer})
 
 
 def _line(space: Any, points: Array, layer: str, old: bool, close: bool) -> None:

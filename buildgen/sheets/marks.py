@@ -2,32 +2,71 @@
 
 from __future__ import annotations
 
+from dataclasses import replace
 from functools import lru_cache
 
 import numpy as np
-from shapely.geometry import Polygon
+from shapely.affinity import rotate
+from shapely.geometry import LineString, Polygon
 
 from buildgen.part import Mark, Part, Plate
 from buildgen.sheets.contour import widest_spot
 from buildgen.sheets.letters import Stroke, width_mm, write
 
 LEAST_MM = 2.0
+ARROW_MM = (20.0, 14.0, 9.0)
 CLEAR_MM = 0.8
 """Between lettering and a cut: scorched edges swallow less; common practice, no source."""
 
 
-def strokes_of(part: Part, height_mm: float) -> tuple[list[Stroke], bool]:
-    """Lettering and lines of a part in its own coordinates; False where its id does not fit."""
+def strokes_of(
+    part: Part, height_mm: float, label: str = "", arrow: bool = False
+) -> tuple[list[Stroke], bool]:
+    """Lettering and lines of a part in its own coordinates; False where its id does not fit.
+
+    Args:
+        height_mm: of a capital, where there is room.
+        label: what stands for the id, "R3R/2" for the second of several kits; "" for the id.
+        arrow: also an arrow along the grain, where there is room beside the lettering.
+    """
     assert isinstance(part.form, Plate)
-    strokes: list[Stroke] = []
-    for mark in part.form.marks:
-        strokes += _strokes(mark)
-    if any(m.text == part.id for m in part.form.marks):
-        return strokes, True
-    found = id_mark(part, height_mm)
+    label = label or part.id
+    marks = [replace(m, text=label) if m.text == part.id else m for m in part.form.marks]
+    found = next((m for m in marks if m.text == label), None)
     if found is None:
-        return strokes, False
-    return strokes + _strokes(found), True
+        found = id_mark(part, height_mm, label)
+        marks += [found] if found else []
+    strokes = [s for m in marks for s in _strokes(m)]
+    if arrow and part.form.grain_deg is not None:
+        strokes += grain_arrow(part.form, strokes)
+    return strokes, found is not None
+
+
+def grain_arrow(plate: Plate, strokes: list[Stroke]) -> list[Stroke]:
+    """An arrow with a head at each end along the grain, clear of cuts and of other strokes."""
+    free = plate.shape2d.buffer(-CLEAR_MM)
+    for stroke in strokes:
+        free = free.difference(LineString(stroke).buffer(CLEAR_MM))
+    grain = plate.grain_deg or 0.0
+    along = rotate(free, -grain, origin=(0.0, 0.0))
+    for long in ARROW_MM:
+        spot = _spot(along, long, 2.0, 0.0)
+        if spot is not None:
+            return [_turned(line, grain) for line in _arrow(spot, long / 2)]
+    return []
+
+
+def _arrow(spot: tuple[float, float], half: float) -> list[Stroke]:
+    x, y = spot
+    heads = [((x + s * (half - 1.6), y + 0.8), (x + s * half, y), (x + s * (half - 1.6), y - 0.8))
+             for s in (-1, 1)]
+    return [((x - half, y), (x + half, y)), *heads]
+
+
+def _turned(line: Stroke, angle_deg: float) -> Stroke:
+    a = np.radians(angle_deg)
+    turn = np.array([[np.cos(a), np.sin(a)], [-np.sin(a), np.cos(a)]])
+    return tuple((float(x), float(y)) for x, y in np.array(line) @ turn)
 
 
 def _strokes(mark: Mark) -> list[Stroke]:
@@ -42,16 +81,17 @@ def _strokes(mark: Mark) -> list[Stroke]:
 
 
 @lru_cache(maxsize=2048)
-def id_mark(part: Part, height_mm: float) -> Mark | None:
+def id_mark(part: Part, height_mm: float, label: str = "") -> Mark | None:
     """The part's id at the largest height that fits inside; None below the least readable."""
     assert isinstance(part.form, Plate)
+    label = label or part.id
     free = part.form.shape2d.buffer(-CLEAR_MM)
     height = height_mm
     while height >= LEAST_MM - 1e-9:
         for angle in (0.0, 90.0):
-            spot = _spot(free, width_mm(part.id, height), height, angle)
+            spot = _spot(free, width_mm(label, height), height, angle)
             if spot is not None:
-                return Mark(part.id, spot, height, angle)
+                return Mark(label, spot, height, angle)
         height -= 0.5
     return None
 

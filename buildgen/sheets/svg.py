@@ -6,8 +6,8 @@ from xml.sax.saxutils import escape
 
 from buildgen.design.schema import Laser
 from buildgen.part import Kit
-from buildgen.sheets.drawing import CUT_INSIDE, CUT_OUTSIDE, MARK, SHEET, Drawing, draw
-from buildgen.sheets.layout import Sheet
+from buildgen.sheets.drawing import CUT_INSIDE, CUT_OUTSIDE, MARK, SHEET, Drawing, Piece, draw
+from buildgen.sheets.sheet import Sheet
 from buildgen.solid import Array
 
 STROKES = {MARK: "#1a7f37", CUT_INSIDE: "#1f4fd8", CUT_OUTSIDE: "#c62828", SHEET: "#888888"}
@@ -24,8 +24,8 @@ def sheet_svg(sheet: Sheet, kit: Kit, laser: Laser) -> str:
                        *(_path(s, height, False) for s in drawing.title)]),
         _group(MARK, [_path(s, height, False) for p in drawing.pieces for s in p.strokes]),
         _group(CUT_INSIDE, _insides(drawing, height)),
-        _group(CUT_OUTSIDE, [_path(p.path.outside, height, True, p.part)
-                             for p in drawing.pieces]),
+        _group(CUT_OUTSIDE, [e for p in drawing.pieces if not p.guest
+                             for e in _outside(p, height)]),
     ]
     head = (f'<svg xmlns="http://www.w3.org/2000/svg" width="{width:g}mm" height="{height:g}mm"'
             f' viewBox="0 0 {width:g} {height:g}">\n<title>'
@@ -45,7 +45,15 @@ def _insides(drawing: Drawing, height: float) -> list[str]:
         found += [f'<circle cx="{x:.4f}" cy="{height - y:.4f}" r="{r:.4f}"/>'
                   for x, y, r in piece.path.circles]
         found += [_path(ring, height, True) for ring in piece.path.inside]
+        found += _outside(piece, height) if piece.guest else []
     return found
+
+
+def _outside(piece: Piece, height: float) -> list[str]:
+    """A part's outside, named by the part; with bridges its runs."""
+    if not piece.outside:
+        return [_path(piece.path.outside, height, True, piece.part)]
+    return [_path(run, height, False, f"{piece.part}.{n}") for n, run in enumerate(piece.outside)]
 
 
 def _path(points: Array, height: float, close: bool, part: str = "") -> str:
