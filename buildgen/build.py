@@ -4,8 +4,8 @@ from __future__ import annotations
 
 import shutil
 import tempfile
-from collections.abc import Callable
-from dataclasses import dataclass
+from collections.abc import Callable, Sequence
+from dataclasses import dataclass, replace
 from functools import cached_property
 from pathlib import Path
 
@@ -14,8 +14,10 @@ from buildgen.checks import Check, Desk, run_checks
 from buildgen.checks.balance import balance_of, balanced
 from buildgen.checks.report import Balance
 from buildgen.design import Design
+from buildgen.design.schema import Laser
 from buildgen.part import Kit
 from buildgen.problems import DesignError, Problem
+from buildgen.sheets.frozen import CutBefore, cut_before, freeze
 from buildgen.sheets.layout import Sheet, lay_out
 from buildgen.sheets.sticks import StickPlan, plan_sticks
 
@@ -33,6 +35,7 @@ class Build(Kit):
     design: Design | None = None
     frame: Airframe | None = None
     say: Say = _quiet
+    kits: int = 1
 
     @cached_property
     def balance(self) -> Balance:
@@ -45,21 +48,45 @@ class Build(Kit):
         return run_checks(Desk(self, self._frame, self.balance))
 
     @cached_property
+    def cut_before(self) -> CutBefore:
+        """Sheets recorded as cut, held against the parts of today."""
+        return cut_before(self, self._design)
+
+    @cached_property
     def sheets(self) -> tuple[Sheet, ...]:
-        """Plates laid on sheets."""
+        """Plates laid on sheets, after those that were cut before."""
+        cut = self.cut_before.sheets
         self.say("laying parts on sheets")
-        return lay_out(self, self._design.definition, self._design.shelf)
+        try:
+            return lay_out(self, self._design.definition, self._design.shelf, kits=self.kits,
+                           cut=cut)
+        except DesignError as error:
+            raise self._design.placed(error) from None
+
+    def frozen(self, names: Sequence[str]) -> Build:
+        """The same build once these sheets are recorded as cut, beside the definition.
+
+        Raises:
+            DesignError: no such sheet, or the record cannot be written.
+        """
+        freeze(self.sheets, names, self, self._design)
+        return replace(self)
 
     @cached_property
     def stick_plans(self) -> tuple[StickPlan, ...]:
         """Sticks and tubes cut from stock."""
-        return plan_sticks(self, self._design.shelf)
+        return plan_sticks(self, self._design.shelf, self.kits)
 
     @property
     def worst(self) -> str:
         """The worst verdict: "pass", "warn" or "fail"."""
         verdicts = {c.verdict for c in self.checks}
         return next((v for v in ("fail", "warn") if v in verdicts), "pass")
+
+    @property
+    def laser(self) -> Laser:
+        """The cutter of the definition."""
+        return self._design.definition.laser
 
     @property
     def _design(self) -> Design:
@@ -84,12 +111,12 @@ class Build(Kit):
 
         return swapped_in(Path(folder) / self.title.name, lambda room: write_all(self, room))
 
-    def write_cut(self, folder: Path | str) -> Path:
-        """Cut sheets and stick list only."""
+    def write_cut(self, folder: Path | str, by_hand: bool = False) -> Path:
+        """Cut sheets, tickets and stick list only; `by_hand` adds the sheets at 1:1 on paper."""
         from buildgen.pack import write_cut
 
         return swapped_in(Path(folder) / f"{self.title.name}-cut",
-                          lambda room: write_cut(self, room))
+                          lambda room: write_cut(self, room, by_hand))
 
     def write_mounts(self, folder: Path | str) -> Path:
         """Printable parts only."""
@@ -112,6 +139,35 @@ def build(design: Design, say: Say = _quiet) -> Build:
     except DesignError as error:
         raise design.placed(error) from None
     return Build(kit.title, kit.parts, kit.joints, design, frame, say)
+
+
+def write_coupon(
+    material: str, thickness_mm: float, design: str | None, folder: Path | str
+) -> str:
+    """The fit coupon of a material into `folder`/<coupon-material-thickness>/.
+
+    Args:
+        material: a name on the shelf.
+        thickness_mm: of the sheet, with calipers.
+        design: whose shelf and layers to use; None for the shipped shelf.
+
+    Returns:
+        What to do with it.
+
+    Raises:
+        DesignError: no such material, or one that must not go under a laser.
+    """
+    from buildgen import pack
+    from buildgen.design import load
+    from buildgen.sheets.coupon import coupon
+    from buildgen.shelf import load_shelf
+
+    own = load(design) if design else None
+    shelf, laser = (own.shelf, own.definition.laser) if own else (load_shelf(), Laser())
+    made = coupon(shelf.material(material, "", "sheet"), thickness_mm)
+    goal = swapped_in(Path(folder) / made.sheet.file, lambda room: pack.write_coupon(
+        made.sheet, made.kit, made.text, laser, room))
+    return f"  written to {goal}\n\n{made.text}"
 
 
 def swapped_in(goal: Path, write: Callable[[Path], None]) -> Path:

@@ -11,6 +11,7 @@ import os
 import sys
 import traceback
 from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
@@ -40,11 +41,13 @@ def parser() -> argparse.ArgumentParser:
         ("check", "every check; the exit status tells", check),
     ):
         sub = commands.add_parser(name, help=help, description=help)
-        sub.add_argument("design", metavar="DESIGN", help="a file, or the name of a shipped design")
+        _add_design(sub, name == "cut")
         if name in ("packet", "cut", "mounts"):
             sub.add_argument("-o", "--out", metavar="DIR", default="out", help="default: out")
         else:
             sub.add_argument("--json", action="store_true", help="print JSON instead of a table")
+        if name == "cut":
+            _add_cutting(sub)
         sub.set_defaults(run=run)
     sub = commands.add_parser("section", help="one airfoil section: figures, or a file")
     sub.add_argument("name", metavar="NAME", help="naca2412, clarky, or a coordinate file")
@@ -61,6 +64,31 @@ def parser() -> argparse.ArgumentParser:
     sub.add_argument("-o", "--out", metavar="DIR", default="out", help="default: out")
     sub.set_defaults(run=packet)
     return top
+
+
+def _add_design(sub: argparse.ArgumentParser, optional: bool) -> None:
+    sub.add_argument("design", metavar="DESIGN", nargs="?" if optional else None,
+                     help="a file, or the name of a shipped design")
+
+
+def _add_cutting(sub: argparse.ArgumentParser) -> None:
+    """What only the cut command takes."""
+    sub.add_argument("--kits", metavar="N", type=_count, default=1,
+                     help="nest N kits together; each part is marked with its kit's number")
+    sub.add_argument("--freeze", metavar="SHEET", nargs="+", default=[],
+                     help="record that these sheets have been cut, beside the definition")
+    sub.add_argument("--paper", action="store_true",
+                     help="also the sheets at 1:1 as PDF, for a knife")
+    sub.add_argument("--coupon", metavar="MATERIAL",
+                     help="a fit coupon of this material instead; DESIGN may be left out")
+    sub.add_argument("--thickness", metavar="MM", type=float, default=3.0,
+                     help="of the coupon, with calipers; default 3")
+
+
+def _count(text: str) -> int:
+    if not text.isdigit() or not 1 <= int(text) <= 50:
+        raise argparse.ArgumentTypeError("a whole number from 1 to 50 is wanted")
+    return int(text)
 
 
 def say(text: str) -> None:
@@ -91,9 +119,18 @@ def packet(args: argparse.Namespace) -> int:
 
 
 def cut(args: argparse.Namespace) -> int:
-    """Write sheets and stick list."""
-    made = _build(args)
-    folder = made.write_cut(args.out)
+    """Write sheets and stick list; record cut ones; or write a fit coupon."""
+    if args.coupon:
+        from buildgen.build import write_coupon
+
+        print(write_coupon(args.coupon, args.thickness, args.design, args.out))
+        return FINE
+    if not args.design:
+        raise DesignError(Problem("", "Name the design to cut.", "buildgen cut DESIGN"))
+    made = replace(_build(args), kits=args.kits)
+    if args.freeze:
+        made = made.frozen(args.freeze)
+    folder = made.write_cut(args.out, args.paper)
     from buildgen.terminal import cut_table
 
     print(cut_table(made, folder))

@@ -11,11 +11,17 @@ from buildgen.prints.files import start
 from buildgen.prints.model import write_glb
 from buildgen.problems import DesignError, Problem
 from buildgen.sheets.dxf import sheet_dxf
+from buildgen.sheets.leftovers import leftovers_text
+from buildgen.sheets.paper import write_paper
 from buildgen.sheets.sticks import sticks_csv
 from buildgen.sheets.svg import sheet_svg
+from buildgen.sheets.ticket import ticket, tickets_csv
 
 if TYPE_CHECKING:
     from buildgen.build import Build
+    from buildgen.design.schema import Laser
+    from buildgen.part import Kit
+    from buildgen.sheets.sheet import Sheet
 
 
 def write_all(build: Build, room: Path) -> None:
@@ -37,9 +43,24 @@ def write_all(build: Build, room: Path) -> None:
     write_manifest(package, room)
 
 
-def write_cut(build: Build, room: Path) -> None:
-    """Sheets and the stick list."""
+def write_cut(build: Build, room: Path, by_hand: bool = False) -> None:
+    """Sheets and the stick list; `by_hand` adds the sheets at 1:1 on paper."""
+    assert build.design is not None
     write_sheets(build, room)
+    old = [s for s in build.cut_before.recorded if s.parts]
+    if old:
+        spacing = build.design.definition.laser.spacing_mm
+        (room / "leftovers.toml").write_text(leftovers_text(old, spacing), "utf-8", newline="\n")
+    if by_hand:
+        fresh = [s for s in build.sheets if not s.cut_from]
+        write_paper(fresh, build, build.design.definition.laser, room / "sheets-1to1.pdf")
+
+
+def write_coupon(sheet: Sheet, kit: Kit, text: str, laser: Laser, room: Path) -> None:
+    """The fit coupon as DXF and SVG, and what to do with it."""
+    (room / "coupon.dxf").write_text(sheet_dxf(sheet, kit, laser), "utf-8", newline="\n")
+    (room / "coupon.svg").write_text(sheet_svg(sheet, kit, laser), "utf-8", newline="\n")
+    (room / "coupon.txt").write_text(text, "utf-8", newline="\n")
 
 
 def write_mounts(build: Build, room: Path) -> None:
@@ -49,16 +70,19 @@ def write_mounts(build: Build, room: Path) -> None:
 
 
 def write_sheets(build: Build, room: Path) -> None:
-    """DXF and SVG of each sheet, and sticks.csv."""
+    """DXF and SVG of each sheet that is not cut yet, tickets.csv and sticks.csv."""
     assert build.design is not None
     folder = room / "sheets"
     folder.mkdir()
     laser = build.design.definition.laser
-    for sheet in build.sheets:
+    fresh = [s for s in build.sheets if not s.cut_from]
+    for sheet in fresh:
         (folder / f"{sheet.file}.dxf").write_text(sheet_dxf(sheet, build, laser), "utf-8",
                                                   newline="\n")
         (folder / f"{sheet.file}.svg").write_text(sheet_svg(sheet, build, laser), "utf-8",
                                                   newline="\n")
+    tickets = [ticket(s, build, laser) for s in fresh]
+    (room / "tickets.csv").write_text(tickets_csv(tickets), "utf-8", newline="\n")
     (room / "sticks.csv").write_text(sticks_csv(build.stick_plans), "utf-8", newline="\n")
 
 

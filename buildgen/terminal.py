@@ -8,6 +8,8 @@ from pathlib import Path
 from typing import TYPE_CHECKING
 
 from buildgen.checks.report import WORST_FIRST, Check
+from buildgen.sheets.frozen import kept_text
+from buildgen.sheets.ticket import ticket, tickets_text
 
 if TYPE_CHECKING:
     from buildgen.build import Build
@@ -104,8 +106,11 @@ def cut_table(made: Build, folder: Path) -> str:
     rows += [
         f"  {s.file:<22} {s.width_mm:g} x {s.height_mm:g} mm  {len(s.parts):3d} parts"
         f"  {100 * s.used_fraction:5.1f} % used  {s.cut_length_mm / 1000:6.2f} m to cut"
-        for s in made.sheets
+        for s in made.sheets if not s.cut_from
     ]
+    fresh = [ticket(s, made, made.laser) for s in made.sheets if not s.cut_from]
+    rows += [kept_text(made.cut_before.kept)] if made.cut_before.kept else []
+    rows += [tickets_text(fresh)] if fresh else []
     rows += [
         f"  {p.material} {p.section}: {len(p.bars)} of {p.stock_length_mm:g} mm"
         for p in made.stick_plans

@@ -11,7 +11,7 @@ from buildgen.part import Kit, Part
 from buildgen.sheets.arcs import Bulges, with_arcs
 from buildgen.sheets.bridges import bridged
 from buildgen.sheets.contour import Contours, beam_path, moved, moved_strokes
-from buildgen.sheets.letters import write
+from buildgen.sheets.letters import width_mm, write
 from buildgen.sheets.marks import strokes_of
 from buildgen.sheets.order import guests_of
 from buildgen.sheets.sheet import Placement, Sheet
@@ -22,7 +22,7 @@ CUT_INSIDE, CUT_OUTSIDE, SCORE, MARK, SHEET = (
 )
 LAYERS = (MARK, SCORE, CUT_INSIDE, CUT_OUTSIDE, SHEET)
 COLOURS = {MARK: 3, SCORE: 4, CUT_INSIDE: 5, CUT_OUTSIDE: 1, SHEET: 8}
-TITLE_MM = 3.0
+TITLE_MM, LEAST_TITLE_MM = 3.0, 1.5
 
 
 @dataclass(frozen=True, eq=False)
@@ -73,7 +73,8 @@ def draw(sheet: Sheet, kit: Kit, laser: Laser) -> Drawing:
     w, h = sheet.width_mm, sheet.height_mm
     words = (f"{kit.title.line}  {sheet.file}  {sheet.material} {sheet.thickness_mm:g} mm"
              f"  kerf {sheet.kerf_mm:g} mm")
-    title = [np.array(s) for s in write(words, TITLE_MM, (0.0, h + 2.0), "start")]
+    high = max(LEAST_TITLE_MM, TITLE_MM * min(1.0, w / width_mm(words, TITLE_MM)))
+    title = [np.array(s) for s in write(words, high, (0.0, h + 2.0), "start")]
     outline = np.array([(0, 0), (w, 0), (w, h), (0, h)], float)
     if sheet.offcut is not None:
         outline = np.asarray(sheet.offcut.exterior.coords)[:-1]

@@ -5,6 +5,7 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 from dataclasses import dataclass, replace
+from itertools import count
 
 from shapely.geometry import Polygon
 
@@ -39,14 +40,14 @@ class Group:
 
     Attributes:
         copies: numbers of the kits that still need the part, by its id.
-        first: number of the first sheet, after those that have been cut.
+        taken: names of sheets that have been cut.
     """
 
     material: Material
     thickness_mm: float
     parts: tuple[Part, ...]
     copies: dict[str, tuple[int, ...]]
-    first: int = 1
+    taken: frozenset[str] = frozenset()
 
 
 def lay_out(
@@ -57,29 +58,29 @@ def lay_out(
 
     Args:
         kits: how many kits to cut together; above 1 each part's mark names its kit.
-        cut: sheets that have been cut, with the parts on them that are still good; these come
-            first and what is on them is not cut again.
+        cut: sheets that have been cut; what is still good on them comes first in the result and
+            is not cut again.
 
     Raises:
         DesignError: no stock, a part larger than its stock, or a material not for a laser.
     """
     numbers = tuple(range(1, kits + 1)) if kits > 1 else (0,)
-    there = {(p.part, p.kit) for s in cut for p in s.placements if p.good}
+    there = {(p.part, p.kit or numbers[0]) for s in cut for p in s.placements if p.good}
+    taken = frozenset(s.file for s in cut)
     groups: dict[tuple[str, float], list[Part]] = {}
     for part in kit.of("cut"):
         assert isinstance(part.form, Plate)
         groups.setdefault((part.material, part.form.thickness_mm), []).append(part)
-    sheets: list[Sheet] = list(cut)
+    sheets = [s for s in map(_still_good, cut) if s.parts]
     problems: list[Problem] = []
     for (material, thickness), parts in sorted(groups.items()):
         copies = {p.id: tuple(n for n in numbers if (p.id, n) not in there) for p in parts}
         wanted = tuple(p for p in parts if copies[p.id])
         if not wanted:
             continue
-        first = 1 + sum((s.material, s.thickness_mm) == (material, thickness) for s in cut)
         try:
             found = shelf.material(material, wanted[0].from_key, "sheet")
-            sheets += _laid(Group(found, thickness, wanted, copies, first), definition)
+            sheets += _laid(Group(found, thickness, wanted, copies, taken), definition)
         except DesignError as error:
             problems += error.problems
     if problems:
@@ -105,10 +106,19 @@ def _laid(group: Group, definition: Definition) -> list[Sheet]:
     blank = Sheet("", material.name, group.thickness_mm, 0.0, 0.0,
                   kerf_of(definition, material, group.thickness_mm), material.grain, (), (),
                   (0.0, 0.0, 0.0, 0.0))
+    names = (f"{material.name}-{group.thickness_mm:g}-{n:02d}" for n in count(1))
+    free = (name for name in names if name not in group.taken)
     return [
-        _sheet(blank, layout, n, parts, group.copies)
-        for n, layout in enumerate(result.layouts, start=group.first)
+        _sheet(replace(blank, file=name), layout, parts, group.copies)
+        for layout, name in zip(result.layouts, free, strict=False)
     ]
+
+
+def _still_good(sheet: Sheet) -> Sheet:
+    """A sheet that has been cut, with those of its parts that need not be cut again."""
+    kept = [(at, part) for at, part in zip(sheet.placements, sheet.parts, strict=True) if at.good]
+    return replace(sheet, placements=tuple(at for at, _ in kept),
+                   parts=tuple(part for _, part in kept))
 
 
 def refuse(material: Material, path: str) -> None:
@@ -183,7 +193,7 @@ def _angles(plate: Plate) -> tuple[float, ...]:
 
 
 def _sheet(
-    blank: Sheet, layout: NestLayout, number: int, by_id: dict[str, Part],
+    blank: Sheet, layout: NestLayout, by_id: dict[str, Part],
     copies: dict[str, tuple[int, ...]],
 ) -> Sheet:
     """One layout as a sheet, its parts in the order of cutting."""
@@ -197,7 +207,7 @@ def _sheet(
     ]
     whole = layout.stock.equals(layout.stock.envelope)
     return replace(
-        blank, file=f"{blank.material}-{blank.thickness_mm:g}-{number:02d}", width_mm=x1,
-        height_mm=y1, placements=tuple(spots), parts=tuple(by_id[p.part] for p in spots),
-        leftover_mm=layout.leftover_mm, offcut=None if whole else layout.stock,
+        blank, width_mm=x1, height_mm=y1, placements=tuple(spots),
+        parts=tuple(by_id[p.part] for p in spots), leftover_mm=layout.leftover_mm,
+        offcut=None if whole else layout.stock,
     )

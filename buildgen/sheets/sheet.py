@@ -58,6 +58,8 @@ class Sheet:
     """Largest whole rectangle left: x, y, width, height."""
     offcut: Polygon | None = None
     """Outline of an irregular piece of stock; None where the sheet is a whole rectangle."""
+    cut_from: str = ""
+    """Title line of the design it was cut from; empty while it is still to be cut."""
 
     @cached_property
     def parts_area_mm2(self) -> float:

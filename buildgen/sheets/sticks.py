@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import csv
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from io import StringIO
 
 import numpy as np
@@ -43,8 +43,11 @@ class StickPlan:
     bars: tuple[StickBar, ...]
 
 
-def plan_sticks(kit: Kit, shelf: Shelf) -> tuple[StickPlan, ...]:
+def plan_sticks(kit: Kit, shelf: Shelf, kits: int = 1) -> tuple[StickPlan, ...]:
     """A cut plan for each material and section.
+
+    Args:
+        kits: how many kits to cut together; above 1 each piece tells its kit, "S1R/2".
 
     Raises:
         DesignError: a stick is longer than any stock, with its part and key.
@@ -52,7 +55,10 @@ def plan_sticks(kit: Kit, shelf: Shelf) -> tuple[StickPlan, ...]:
     groups: dict[tuple[str, str], list[Part]] = {}
     for part in kit.of("stick"):
         assert isinstance(part.form, Stick)
-        groups.setdefault((part.material, part.form.section), []).append(part)
+        copies = [part] if kits == 1 else [
+            replace(part, id=f"{part.id}/{n}") for n in range(1, kits + 1)
+        ]
+        groups.setdefault((part.material, part.form.section), []).extend(copies)
     plans, problems = [], []
     for (material, section), parts in groups.items():
         lengths = shelf.material(material, parts[0].from_key).lengths_mm or (1000.0,)
