@@ -7,9 +7,11 @@ from pathlib import Path
 from typing import Any
 
 from buildgen.problems import DesignError, Problem, nearest
-from buildgen.section.curve import Figures, Section, blend, figures, from_points
+from buildgen.section.curve import Section, blend
+from buildgen.section.figures import Figures, figures
 from buildgen.section.naca import is_naca, naca
 from buildgen.section.read import read_file
+from buildgen.section.spline import from_points
 from buildgen.section.write import WRITERS, write
 
 ENDINGS = (".csv", ".dat", ".txt")

@@ -8,7 +8,8 @@ from pathlib import Path
 import numpy as np
 
 from buildgen.problems import DesignError, Problem
-from buildgen.section.curve import Array, Section, from_points
+from buildgen.section.curve import Array, Section
+from buildgen.section.spline import from_points
 
 SPLIT = re.compile(r"[\s,;]+")
 ELEMENT_MARK = 999.0

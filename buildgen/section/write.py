@@ -9,7 +9,8 @@ from pathlib import Path
 import numpy as np
 
 from buildgen.problems import DesignError, Problem
-from buildgen.section.curve import Section, figures
+from buildgen.section.curve import Section
+from buildgen.section.figures import figures
 
 PICTURE = (1400, 560)
 MARGIN = 70
