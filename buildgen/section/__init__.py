@@ -33,34 +33,59 @@ def find(name: str, folders: Sequence[Path] = ()) -> Section:
     """A section by name or path.
 
     Args:
-        name: a NACA designation, a shipped name, a name in one of the folders, or a path.
+        name: a NACA designation, a shipped name, a name in one of the folders, or a path (from
+            one of the folders, or from here). Capitals do not matter, nor does the ending.
         folders: the user's own folders of coordinate files; they win over the shipped ones.
 
     Raises:
-        DesignError: there is no such section; with the nearest name.
+        DesignError: there is no such section, with the nearest name; or its file holds none.
     """
     wanted = name.strip()
     for folder in (*folders, shipped_folder()):
-        for ending in ENDINGS:
-            path = folder / f"{wanted.lower()}{ending}"
-            for candidate in (folder / f"{wanted}{ending}", path):
-                if candidate.is_file():
-                    return read_file(candidate)
+        held = _held(folder, wanted)
+        if held is not None:
+            return read_file(held)
     if is_naca(wanted):
         return naca(wanted)
     path = Path(wanted)
-    if path.suffix.lower() in ENDINGS or path.is_file():
+    if path.suffix.lower() in ENDINGS or _is_file(path):
         return read_file(path)
-    own = [p.stem for f in folders if f.is_dir() for p in f.iterdir() if p.suffix in ENDINGS]
+    own = [p.stem for folder in folders for p in _files(folder)]
     hint = nearest(wanted, [*shipped(), *own])
     raise DesignError(
         Problem("", f'There is no section "{name}".',
-                f"{hint} NACA designations and files (.dat, .csv) are known too.")
+                f"{hint} NACA designations and files (.dat, .csv) are known too.".lstrip())
     )
 
 
+def _held(folder: Path, wanted: str) -> Path | None:
+    """The file of that name in a folder; the right capitals first, then .csv before the rest."""
+    if not wanted:
+        return None
+    target = folder / wanted
+    goal = target.name.casefold()
+    fit = [p for p in _files(target.parent) if goal in (p.stem.casefold(), p.name.casefold())]
+    return min(fit, default=None, key=lambda p: (
+        target.name not in (p.stem, p.name), ENDINGS.index(p.suffix.lower()), p.name))
+
+
+def _files(folder: Path) -> list[Path]:
+    """Coordinate files in a folder; none where it cannot be read."""
+    try:
+        return [p for p in folder.iterdir() if p.suffix.lower() in ENDINGS and p.is_file()]
+    except (OSError, ValueError):
+        return []
+
+
+def _is_file(path: Path) -> bool:
+    try:
+        return path.is_file()
+    except (OSError, ValueError):
+        return False
+
+
 def describe(section: Section) -> dict[str, Any]:
-    """Figures for machines: lengths in percent of the chord, area in chord squared."""
+    """Figures for machines: keys that end in _percent in percent of the chord, area in chord^2."""
     f = figures(section)
     return {
         "name": section.name,
@@ -77,7 +102,7 @@ def describe(section: Section) -> dict[str, Any]:
 
 
 def table(section: Section) -> str:
-    """The same for people."""
+    """The same for people, one figure a line."""
     d = describe(section)
     rows = [
         ("thickness", f"{d['thickness_percent']:.2f} % at {d['thickness_at_percent']:.1f} %"),

@@ -35,7 +35,8 @@ def naca(designation: str, closed: bool = False) -> Section:
 
     Args:
         designation: "naca2412", "NACA 0012-64", "23012"; "-closed" at the end closes the edge.
-        closed: close the trailing edge by changing the last thickness coefficient.
+        closed: close the trailing edge by changing the last thickness coefficient (0.1036
+            instead of 0.1015).
 
     Raises:
         DesignError: no such section.
@@ -49,8 +50,10 @@ def naca(designation: str, closed: bool = False) -> Section:
     if thick <= 0:
         raise DesignError(Problem("", f"{designation}: the last two digits give no thickness."))
     x = cosine(DENSE)
-    half = _modified(x, thick, int(nose), int(place), designation) if nose else _half(
-        x, thick, closed)
+    if nose:
+        half = _modified(x, thick, int(nose), int(place), designation, closed)
+    else:
+        half = _half(x, thick, closed)
     mean, slope = mean_line(digits, x)
     angle = np.arctan(slope)
     upper = np.column_stack([x - half * np.sin(angle), mean + half * np.cos(angle)])
@@ -73,24 +76,28 @@ def _half(x: Array, thick: float, closed: bool) -> Array:
 AFT_SLOPE = {2: 1.000, 3: 1.170, 4: 1.575, 5: 2.325, 6: 3.500}
 
 
-def _modified(x: Array, thick: float, nose: int, place: int, name: str) -> Array:
+def _modified(
+    x: Array, thick: float, nose: int, place: int, name: str, closed: bool
+) -> Array:
     """Half thickness of the modified family: a front and an aft curve that meet at m.
 
     Source: TR 492; the front's coefficients follow from equal ordinate, slope zero and equal
-    curvature at m, as in TM 4741.
+    curvature at m, as in TM 4741. Closed by d0 = 0, d0 being half the edge (common practice, no
+    source).
     """
-    if place not in AFT_SLOPE or nose > 9:
+    if place not in AFT_SLOPE:
         raise DesignError(
             Problem("", f"{name}: greatest thickness at {place} tenths is not tabulated.",
                     f"Allowed last digits: {', '.join(map(str, AFT_SLOPE))}.")
         )
     m, t = place / 10, thick
-    d0, d1 = 0.01 * t, AFT_SLOPE[place] * t
+    d0, d1 = 0.0 if closed else 0.01 * t, AFT_SLOPE[place] * t
     gap = 1 - m
     system = np.array([[gap**2, gap**3], [-2 * gap, -3 * gap**2]])
     d2, d3 = np.linalg.solve(system, [t / 2 - d0 - d1 * gap, d1])
     curvature = 2 * d2 + 6 * d3 * gap
-    radius = 1.1019 * t**2 * (nose / 6) ** 2 if nose < 9 else 1.1019 * t**2 * 3
+    # index 6 is the normal nose, 9 one of three times its radius
+    radius = 1.1019 * t**2 * (3 if nose == 9 else (nose / 6) ** 2)
     a0 = np.sqrt(2 * radius)
     front = np.array([[m, m**2, m**3], [1, 2 * m, 3 * m**2], [0, 2, 6 * m]])
     a1, a2, a3 = np.linalg.solve(
@@ -102,7 +109,18 @@ def _modified(x: Array, thick: float, nose: int, place: int, name: str) -> Array
 
 
 def mean_line(designation: str, x: Array) -> tuple[Array, Array]:
-    """Mean line and its slope at fractions of the chord, four- or five-digit."""
+    """Mean line and its slope, four- or five-digit.
+
+    Args:
+        designation: as for `naca`.
+        x: (n,) fractions of the chord.
+
+    Returns:
+        (n,) ordinates [chord] and (n,) slopes.
+
+    Raises:
+        DesignError: no such mean line.
+    """
     digits = re.sub(r"\D", "", designation.split("-")[0])
     return _mean_four(x, digits) if len(digits) == 4 else _mean_five(x, digits)
 
@@ -110,8 +128,13 @@ def mean_line(designation: str, x: Array) -> tuple[Array, Array]:
 def _mean_four(x: Array, digits: str) -> tuple[Array, Array]:
     """Mean line and slope of the four-digit family. Source: TR 460."""
     m, p = int(digits[0]) / 100, int(digits[1]) / 10
-    if m == 0 or p == 0:
+    if m == 0:
         return np.zeros_like(x), np.zeros_like(x)
+    if p == 0:
+        raise DesignError(
+            Problem("", f"NACA {digits}: a cambered mean line needs its place.",
+                    "The second digit is the place of the camber in tenths of the chord.")
+        )
     ahead = x < p
     mean = np.where(ahead, m / p**2 * (2 * p * x - x**2),
                     m / (1 - p) ** 2 * (1 - 2 * p + 2 * p * x - x**2))

@@ -90,13 +90,13 @@ def _over_root_of_x(points: Array, nose: int) -> Array:
     at = float(tried[int(np.argmin(rough))])
     s = _roots(points, nose, at)
     grid = _stations(s[0], 0.0, s[-1])
-    return np.column_stack([points[nose, 0] - at**2 + grid**2,
-                            CubicSpline(s, points[:, 1])(grid)])
+    y = np.asarray(CubicSpline(s, points[:, 1])(grid))
+    return np.column_stack([points[nose, 0] - at**2 + grid**2, y])
 
 
 def _roots(points: Array, nose: int, at: float) -> Array:
     """Signed roots of the distance from the start, less than 0 above; the nose stands at `at`."""
-    s = np.sqrt(points[:, 0] - points[nose, 0] + at**2)
+    s: Array = np.sqrt(points[:, 0] - points[nose, 0] + at**2)
     s[:nose] *= -1
     s[nose] = at
     return s

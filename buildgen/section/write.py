@@ -3,55 +3,77 @@
 from __future__ import annotations
 
 import io
+import math
+import re
 from collections.abc import Callable
 from pathlib import Path
+from xml.sax.saxutils import escape
 
 import numpy as np
 
 from buildgen.problems import DesignError, Problem
-from buildgen.section.curve import Section
+from buildgen.section.curve import Array, Section
 from buildgen.section.figures import figures
 
 PICTURE = (1400, 560)
 MARGIN = 70
+ROWS = 101
+"""Points a side in a coordinate file."""
+DRAWN = 201
+"""Points a side in a drawing: within 0.01 mm at 300 mm of chord."""
+MERGED_MM = 0.001
+LAYER = "CUT_OUTSIDE"
+NO_TITLE = re.compile(r"#.*|[\d\s.,;+-]*")
+"""Names that a reader would take for a remark or for a point."""
 
 
 def as_dat(section: Section, chord_mm: float) -> bytes:
     """Title line, then x y in unit chord from the upper edge round the nose."""
-    rows = [f" {x:9.6f} {y:9.6f}" for x, y in section.contour(81)]
-    return "\n".join([section.name, *rows, ""]).encode()
+    title = section.name
+    if NO_TITLE.fullmatch(title):
+        title = f"section {title}"
+    rows = [f" {x:10.7f} {y:10.7f}" for x, y in section.contour(ROWS)]
+    return "\n".join([title, *rows, ""]).encode()
 
 
 def as_csv(section: Section, chord_mm: float) -> bytes:
-    rows = [f"{x:.6f},{y:.6f}" for x, y in section.contour(81)]
+    """Name and source as remarks, then x,y in unit chord from the upper edge round the nose."""
+    rows = [f"{x:.7f},{y:.7f}" for x, y in section.contour(ROWS)]
     head = [f"# name: {section.name}", f"# designer / publication: {section.source}", "x,y"]
     return "\n".join([*head, *rows, ""]).encode()
 
 
+def _ring_mm(section: Section, chord_mm: float) -> Array:
+    """The outline in millimetres, its first point not repeated at the end."""
+    points = section.contour(DRAWN) * chord_mm
+    return points[:-1] if np.hypot(*(points[0] - points[-1])) < MERGED_MM else points
+
+
 def as_svg(section: Section, chord_mm: float) -> bytes:
-    """True size in millimetres."""
-    points = section.contour(161) * chord_mm
+    """A closed path, true size in millimetres."""
+    points = _ring_mm(section, chord_mm)
     low, high = points.min(axis=0) - 5, points.max(axis=0) + 5
     width, height = high - low
     path = " L ".join(f"{x:.3f} {-y:.3f}" for x, y in points)
     return (
         f'<svg xmlns="http://www.w3.org/2000/svg" width="{width:.3f}mm" height="{height:.3f}mm"'
         f' viewBox="{low[0]:.3f} {-high[1]:.3f} {width:.3f} {height:.3f}">\n'
-        f"<title>{section.name}, chord {chord_mm:g} mm</title>\n"
+        f"<title>{escape(section.name)}, chord {chord_mm:g} mm</title>\n"
         f'<path d="M {path} Z" fill="none" stroke="black" stroke-width="0.2"/>\n</svg>\n'
     ).encode()
 
 
 def as_dxf(section: Section, chord_mm: float) -> bytes:
-    """A closed polyline in millimetres."""
+    """A closed polyline in millimetres on the layer of outside cuts."""
     import ezdxf
 
     keep = ezdxf.options.write_fixed_meta_data_for_testing
     ezdxf.options.write_fixed_meta_data_for_testing = True
     try:
         drawing = ezdxf.new("R2010", units=4)
-        points = section.contour(161) * chord_mm
-        drawing.modelspace().add_lwpolyline(points.tolist(), close=True)
+        drawing.layers.add(LAYER)
+        drawing.modelspace().add_lwpolyline(
+            _ring_mm(section, chord_mm).tolist(), close=True, dxfattribs={"layer": LAYER})
         stream = io.StringIO()
         drawing.write(stream)
         return stream.getvalue().encode()
@@ -105,8 +127,13 @@ WRITERS: dict[str, Callable[[Section, float], bytes]] = {
 def write(section: Section, path: Path | str, chord_mm: float = 200.0) -> None:
     """Write by the file's ending: .dat, .csv, .svg, .png or .dxf.
 
+    Args:
+        section: what to write.
+        path: the file; its folder exists.
+        chord_mm: size of a drawing, above 0; coordinates and pictures are in unit chord.
+
     Raises:
-        DesignError: another ending, or the file cannot be written.
+        DesignError: another ending, no chord, or the file cannot be written.
     """
     path = Path(path)
     maker = WRITERS.get(path.suffix.lower())
@@ -115,10 +142,12 @@ def write(section: Section, path: Path | str, chord_mm: float = 200.0) -> None:
             Problem("", f'"{path.suffix or path.name}" is no ending for a section.',
                     f"Allowed: {', '.join(WRITERS)}.", path.name)
         )
+    if not 0 < chord_mm < math.inf:
+        raise DesignError(Problem("", f"{chord_mm:g} mm is no chord.", "Give a length above 0."))
     data = maker(section, chord_mm)
     try:
         path.write_bytes(data)
     except OSError as error:
         raise DesignError(
-            Problem("", f"{path.name} cannot be written.", f"{error.strerror}.", str(path))
+            Problem("", "The file cannot be written.", f"{error.strerror}.", str(path))
         ) from None
