@@ -10,6 +10,7 @@ from buildgen.packet.write import write_manifest, write_packet
 from buildgen.prints.files import start
 from buildgen.prints.model import write_glb
 from buildgen.problems import DesignError, Problem
+from buildgen.sheets.drawing import draw
 from buildgen.sheets.dxf import sheet_dxf
 from buildgen.sheets.leftovers import leftovers_text
 from buildgen.sheets.paper import write_paper
@@ -76,12 +77,14 @@ def write_sheets(build: Build, room: Path) -> None:
     folder.mkdir()
     laser = build.design.definition.laser
     fresh = [s for s in build.sheets if not s.cut_from]
+    tickets = []
     for sheet in fresh:
-        (folder / f"{sheet.file}.dxf").write_text(sheet_dxf(sheet, build, laser), "utf-8",
-                                                  newline="\n")
-        (folder / f"{sheet.file}.svg").write_text(sheet_svg(sheet, build, laser), "utf-8",
-                                                  newline="\n")
-    tickets = [ticket(s, build, laser) for s in fresh]
+        drawing = draw(sheet, build, laser)
+        dxf = sheet_dxf(sheet, build, laser, drawing)
+        svg = sheet_svg(sheet, build, laser, drawing)
+        (folder / f"{sheet.file}.dxf").write_text(dxf, "utf-8", newline="\n")
+        (folder / f"{sheet.file}.svg").write_text(svg, "utf-8", newline="\n")
+        tickets.append(ticket(sheet, build, laser, drawing))
     (room / "tickets.csv").write_text(tickets_csv(tickets), "utf-8", newline="\n")
     (room / "sticks.csv").write_text(sticks_csv(build.stick_plans), "utf-8", newline="\n")
 

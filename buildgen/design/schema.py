@@ -358,6 +358,9 @@ class Laser(Table):
     slip_mm: Extent = Field(0.10, description="Play on each side of what slides in.")
     press_mm: Number = Field(0.0, description="Play on each side of what is glued in.")
     letter_mm: Length = 5.0
+    seat_lines: bool = Field(
+        True, description="Engrave where neighbours sit and where spars pass."
+    )
     grain_arrows: bool = Field(False, description="An arrow along the grain beside each id.")
     effort: Literal["quick", "normal", "high"] = Field(
         "normal", description="Nesting: normal searches longer only where it may save a sheet."

@@ -43,7 +43,8 @@ def _middle(marks: Array, wanted: float, gap: float, share: float) -> float:
     lengths = np.diff(marks)
     middles = (marks[:-1] + marks[1:]) / 2
     # along a long edge the wanted place itself is as good as the middle
-    spots = np.clip(wanted, marks[:-1] + gap, marks[1:] - gap)
+    inset = np.clip(lengths / 4, gap, 6 * gap)  # well away from the corners
+    spots = np.clip(wanted, marks[:-1] + inset, marks[1:] - inset)
     spots = np.where(lengths > 2 * gap, spots, middles)
     away = np.where(lengths > 2 * gap, np.abs(spots - wanted), np.inf)
     best = int(np.argmin(away))

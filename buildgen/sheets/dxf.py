@@ -27,8 +27,12 @@ PLACES = 4
 BULGE_PLACES = 8
 
 
-def sheet_dxf(sheet: Sheet, kit: Kit, laser: Laser) -> str:
-    """The text of the DXF file; equal sheets give equal text."""
+def sheet_dxf(sheet: Sheet, kit: Kit, laser: Laser, drawing: Drawing | None = None) -> str:
+    """The text of the DXF file; equal sheets give equal text.
+
+    Args:
+        drawing: the sheet as drawn already, where it is.
+    """
     import ezdxf
 
     keep = ezdxf.options.write_fixed_meta_data_for_testing
@@ -37,7 +41,7 @@ def sheet_dxf(sheet: Sheet, kit: Kit, laser: Laser) -> str:
         document = ezdxf.new(laser.dxf, units=MILLIMETRES)
         for name in LAYERS:
             document.layers.add(name, color=colours(laser)[name])
-        drawing = draw(sheet, kit, laser)
+        drawing = drawing or draw(sheet, kit, laser)
         _fill(document.modelspace(), drawing, laser.dxf == "R12")
         x, y = drawing.outline.max(axis=0)
         far = (float(x), float(y) + 5.5, 0)

@@ -23,6 +23,7 @@ from buildgen.sheets.nest_types import (
 )
 from buildgen.sheets.order import cutting_order
 from buildgen.sheets.relief import relieved
+from buildgen.sheets.seats import with_seats
 from buildgen.sheets.sheet import Placement, Sheet
 from buildgen.sheets.stock import kerf_of, stock_of
 from buildgen.shelf import Material, Shelf
@@ -68,7 +69,8 @@ def lay_out(
     there = {(p.part, p.kit or numbers[0]) for s in cut for p in s.placements if p.good}
     taken = frozenset(s.file for s in cut)
     groups: dict[tuple[str, float], list[Part]] = {}
-    for part in kit.of("cut"):
+    plates = with_seats(kit) if definition.laser.seat_lines else {}
+    for part in (plates.get(p.id, p) for p in kit.of("cut")):
         assert isinstance(part.form, Plate)
         groups.setdefault((part.material, part.form.thickness_mm), []).append(part)
     sheets = [s for s in map(_still_good, cut) if s.parts]

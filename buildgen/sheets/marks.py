@@ -6,6 +6,7 @@ from dataclasses import replace
 from functools import lru_cache
 
 import numpy as np
+import shapely
 from shapely.affinity import rotate
 from shapely.geometry import LineString, Polygon
 
@@ -14,6 +15,8 @@ from buildgen.sheets.contour import widest_spot
 from buildgen.sheets.letters import Stroke, width_mm, write
 
 LEAST_MM = 2.0
+MOST_TRIES = 600
+"""Places tried on a large part before the fine grid is: most have room somewhere near."""
 ARROW_MM = (20.0, 14.0, 9.0)
 CLEAR_MM = 0.8
 """Between lettering and a cut: scorched edges swallow less; common practice, no source."""
@@ -85,7 +88,7 @@ def id_mark(part: Part, height_mm: float, label: str = "") -> Mark | None:
     """The part's id at the largest height that fits inside; None below the least readable."""
     assert isinstance(part.form, Plate)
     label = label or part.id
-    free = part.form.shape2d.buffer(-CLEAR_MM)
+    free = clear_room(part.form)
     height = height_mm
     while height >= LEAST_MM - 1e-9:
         for angle in (0.0, 90.0):
@@ -94,6 +97,13 @@ def id_mark(part: Part, height_mm: float, label: str = "") -> Mark | None:
                 return Mark(label, spot, height, angle)
         height -= 0.5
     return None
+
+
+def clear_room(plate: Plate) -> Polygon:
+    """Where there is neither a cut nor a mark."""
+    free = plate.shape2d.buffer(-CLEAR_MM)
+    lines = [LineString(s).buffer(CLEAR_MM) for m in plate.marks for s in _strokes(m)]
+    return free.difference(shapely.union_all(lines)) if lines else free
 
 
 def _spot(
@@ -109,19 +119,24 @@ def _spot(
         return None
     first, radius = widest_spot(max(getattr(free, "geoms", [free]), key=lambda g: g.area))
     spots = [(first.x, first.y)] if radius > min(wide, high) / 2 else []
-    xs = np.linspace(x0 + wide / 2, x1 - wide / 2, max(3, int((x1 - x0) / 2.5)))
-    ys = np.linspace(y0 + high / 2, y1 - high / 2, max(3, int((y1 - y0) / 1.5)))
-    middle = ((x0 + x1) / 2, (y0 + y1) / 2)
-    grid = [(float(x), float(y)) for x in xs for y in ys]
-    grid.sort(key=lambda p: (abs(p[0] - middle[0]) + 2 * abs(p[1] - middle[1]), p))
-    import shapely
-
     shapely.prepare(free)
-    boxes = shapely.box(*(np.array([*spots, *grid]).T[[0, 1, 0, 1]]
-                          + np.array([[-wide], [-high], [wide], [high]]) / 2))
-    inside = shapely.contains(free, boxes)
-    if not inside.any():
-        return None
-    return [*spots, *grid][int(np.argmax(inside))]
+    middle = np.array([(x0 + x1) / 2, (y0 + y1) / 2])
+    for most in (MOST_TRIES, None):
+        nx, ny = max(3, int((x1 - x0) / 2.5)), max(3, int((y1 - y0) / 1.5))
+        if most and nx * ny <= most:
+            continue
+        if most:
+            nx, ny = min(nx, most // 12), min(ny, 12)
+        grid = np.stack(np.meshgrid(np.linspace(x0 + wide / 2, x1 - wide / 2, nx),
+                                    np.linspace(y0 + high / 2, y1 - high / 2, ny),
+                                    indexing="ij"), axis=-1).reshape(-1, 2)
+        away = np.abs(grid - middle) @ (1.0, 2.0)
+        tried = np.vstack([np.array(spots).reshape(-1, 2), grid[np.lexsort((*grid.T, away))]])
+        low, top = tried - (wide / 2, high / 2), tried + (wide / 2, high / 2)
+        inside = shapely.contains(free, shapely.box(*low.T, *top.T))
+        if inside.any():
+            x, y = tried[int(np.argmax(inside))]
+            return float(x), float(y)
+    return None
 
 

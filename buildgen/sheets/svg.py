@@ -15,9 +15,9 @@ TITLE_ROOM_MM = 7.0
 HAIR_MM = 0.1
 
 
-def sheet_svg(sheet: Sheet, kit: Kit, laser: Laser) -> str:
+def sheet_svg(sheet: Sheet, kit: Kit, laser: Laser, drawing: Drawing | None = None) -> str:
     """The text of the SVG file; y runs down, the sheet's lower left corner stays lower left."""
-    drawing = draw(sheet, kit, laser)
+    drawing = drawing or draw(sheet, kit, laser)
     width, height = sheet.width_mm, sheet.height_mm + TITLE_ROOM_MM
     groups = [
         _group(SHEET, [_path(drawing.outline, height, True),

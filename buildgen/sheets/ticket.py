@@ -11,7 +11,7 @@ import numpy as np
 
 from buildgen.design.schema import Laser, Speed
 from buildgen.part import G_PER_MM3, Kit
-from buildgen.sheets.drawing import draw
+from buildgen.sheets.drawing import Drawing, draw
 from buildgen.sheets.sheet import Sheet
 from buildgen.solid import Array
 
@@ -49,9 +49,9 @@ class Ticket:
     guests: tuple[str, ...]
 
 
-def ticket(sheet: Sheet, kit: Kit, laser: Laser) -> Ticket:
+def ticket(sheet: Sheet, kit: Kit, laser: Laser, drawing: Drawing | None = None) -> Ticket:
     """The figures of one sheet."""
-    pieces = draw(sheet, kit, laser).pieces
+    pieces = (drawing or draw(sheet, kit, laser)).pieces
     outside = sum(_length(r) for p in pieces for r in (p.outside or [_closed(p.path.outside)]))
     inside = sum(_length(_closed(r)) for p in pieces for r in p.path.inside)
     inside += sum(2 * np.pi * r for p in pieces for *_, r in p.path.circles)
