@@ -21,7 +21,9 @@ from buildgen.sheets.sheet import Sheet
 STILL_GOOD_MM = 0.03
 """Outlines this near are the same part: five times what their record is rounded by."""
 
-State: TypeAlias = Literal["still good", "must be re-cut", "no longer in the design"]
+State: TypeAlias = Literal[
+    "still good", "must be re-cut", "cut again since", "no longer in the design"
+]
 
 
 @dataclass(frozen=True, slots=True)
@@ -123,7 +125,12 @@ def reconciled(
             parts.append(wanted[old.id] if good else old)
             told.append(kept)
         found.append(replace(sheet, placements=tuple(places), parts=tuple(parts)))
-    return tuple(found), tuple(told)
+    good_ones = {k.part for k in told if k.state == "still good"}
+    return tuple(found), tuple(
+        replace(k, state="cut again since", why="")
+        if k.state == "must be re-cut" and k.part in good_ones else k
+        for k in told
+    )
 
 
 def _stands(sheet: Sheet, old: Part, new: Part | None, label: str) -> Kept:
@@ -161,6 +168,7 @@ def _apart(one: Polygon, two: Polygon) -> float:
 
 def kept_text(kept: Sequence[Kept]) -> str:
     """What a person reads: the parts to cut again, and how many are still good."""
+    kept = [k for k in kept if k.state != "cut again since"]
     good = sum(k.state == "still good" for k in kept)
     rows = [f"  cut before: {good} of {len(kept)} parts are still good"]
     rows += [f"    {k.part} on {k.sheet}: {k.state}{f' ({k.why})' if k.why else ''}"

@@ -52,14 +52,7 @@ def with_seats(kit: Kit) -> dict[str, Part]:
         Solid(p, Placed(p.form.shape, p.pose)) for p in kit.parts
         if isinstance(p.form, Plate | Stick)
     ]
-    through = {(j.inner, j.outer) for j in kit.joints if "hole" in j.kind}
-    return {
-        s.part.id: _marked(s, [
-            o for o in solids
-            if isinstance(o.part.form, Plate) or (o.part.id, s.part.id) in through
-        ])
-        for s in solids if isinstance(s.part.form, Plate)
-    }
+    return {s.part.id: _marked(s, solids) for s in solids if isinstance(s.part.form, Plate)}
 
 
 def _marked(plate: Solid, solids: list[Solid]) -> Part:
@@ -72,7 +65,7 @@ def _marked(plate: Solid, solids: list[Solid]) -> Part:
             continue
         if isinstance(other.part.form, Plate):
             marks += _seat(plate, other, free)
-        elif form.bend is None:
+        elif form.bend is None and (form.circles or form.outline.interiors):
             marks += _passage(plate, other, free)
     if not marks:
         return plate.part

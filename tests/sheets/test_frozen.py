@@ -86,6 +86,18 @@ def test_changes_are_told_part_by_part_and_only_these_are_cut(tmp_path: Path) ->
     assert all(s.faults(1.5, 5.0) == [] for s in laid)
 
 
+def test_a_part_cut_again_is_no_longer_told(tmp_path: Path) -> None:
+    kit = changed(small_kit(), F3=box(0, 0, 26, 50))
+    sheets, _ = reconciled(record(tmp_path, small_sheets()), kit.by_id)
+    fresh = [s for s in lay_out(kit, small_definition(), load_shelf(), cut=sheets)
+             if not s.cut_from]
+    assert [p.part for s in fresh for p in s.placements] == ["F3"]
+    again, kept = reconciled(record(tmp_path, (*small_sheets(), *fresh)), kit.by_id)
+    assert [k.state for k in kept if k.part == "F3"] == ["cut again since", "still good"]
+    assert "7 of 7 parts are still good" in kept_text(kept)
+    assert all(s.cut_from for s in lay_out(kit, small_definition(), load_shelf(), cut=again))
+
+
 def test_another_material_or_thickness_must_be_cut_again(tmp_path: Path) -> None:
     kit = small_kit()
     thicker = replace(kit, parts=tuple(

@@ -6,15 +6,15 @@ import numpy as np
 import pytest
 from shapely.geometry import LineString, Point, box
 
-from buildgen.part import Joint, Kit, Part, Plate, Stick, Title
+from buildgen.part import Kit, Part, Plate, Stick, Title
 from buildgen.sheets.marks import CLEAR_MM, strokes_of
 from buildgen.sheets.seats import with_seats
 from buildgen.solid import Box, Pose
 from tests.conftest import shipped_kit
 
 
-def kit_of(*parts: Part, joints: tuple[Joint, ...] = ()) -> Kit:
-    return Kit(Title("t", "t", "A", "0" * 64), parts, joints)
+def kit_of(*parts: Part) -> Kit:
+    return Kit(Title("t", "t", "A", "0" * 64), parts)
 
 
 def plate(id: str, outline, pose: Pose, thickness: float = 3.0) -> Part:  # type: ignore[no-untyped-def]
@@ -56,8 +56,7 @@ def test_a_spar_through_a_hole_gets_its_centre_line() -> None:
     rib = plate("R1", box(0, 0, 100, 40).difference(box(30, 15, 36, 21)), Pose())
     spar = Part("S1", "spar", "balsa", Stick(Box((30, 15, -50), (36, 21, 50)), 100, "6 x 6"),
                 Pose(), "s", "k", 160.0)
-    kit = kit_of(rib, spar, joints=(Joint("spar in hole", "S1", "R1"),))
-    lines = [m.line for m in with_seats(kit)["R1"].form.marks]  # type: ignore[union-attr]
+    lines = [m.line for m in with_seats(kit_of(rib, spar))["R1"].form.marks]  # type: ignore[union-attr]
     assert len(lines) == 2
     assert all(x == pytest.approx(33.0) for line in lines for x, _ in line)
     heights = sorted(y for line in lines for _, y in line)
@@ -76,3 +75,13 @@ def test_shipped_kits_carry_clear_marks(name: str) -> None:
         clear = part.form.shape2d.buffer(-CLEAR_MM + 0.02)
         assert all(clear.contains(LineString(s)) for s in strokes), part.id
         assert part.mass_g == kit.by_id[part.id].mass_g
+
+
+@pytest.mark.parametrize("name", ["sedge", "marram", "samphire"])
+def test_left_ribs_carry_as_many_lines_as_right_ones(name: str) -> None:
+    plates = with_seats(shipped_kit(name))
+    right = [i for i in plates if i.startswith("R") and i.endswith("R")]
+    assert right
+    for id in right:
+        left = plates[id[:-1] + "L"].form
+        assert len(left.marks) == len(plates[id].form.marks), id  # type: ignore[union-attr]
