@@ -79,8 +79,8 @@ def make_kit(frame: Airframe, title: Title) -> Kit:
     """Every part of the airframe, in the order of the build."""
     shop, wing, drive = frame.shop, frame.wing, frame.drive
     members = make_members(shop, wing, drive.bays)
-    ribs, joints = make_ribs(shop, wing, drive.bays, members, drive.rib_cuts)
-    wing_parts = [*ribs, *(p for m in members for p in m.parts)]
+    ribs = make_ribs(shop, wing, drive.bays, members, drive.rib_cuts)
+    wing_parts = [*ribs.parts, *(p for m in members for p in m.parts)]
     body = list(frame.body.parts) if frame.body else []
     tail = list(frame.tail.parts) if frame.tail else []
     power = list(drive.parts)
@@ -96,9 +96,10 @@ def make_kit(frame: Airframe, title: Title) -> Kit:
     groups = {"wing": wing_parts, "fuselage": body, "tail": tail, "mounts": power}
     parts = [*wing_parts, *body, *tail, *covers, *power, *frame.equipment[0],
              *glue(shop, groups)]
-    more: list[Joint] = [*joints]
+    more: list[Joint] = [*ribs.joints, *(j for m in members for j in m.joints)]
     more += frame.body.joints if frame.body else ()
     more += frame.tail.joints if frame.tail else ()
+    more += drive.joints(ribs.of_bay)
     return Kit(title, tuple(parts), tuple(more))
 
 

@@ -36,6 +36,8 @@ DECKS = "Fuselage: top and bottom"
 FAR_MM = 400.0
 FORMER_WEB_MM = 7.0
 CORNER_MM = 4.0
+GLUE_GAP_MM = 0.15
+"""A gap that glue still fills; common practice, no source."""
 SADDLE_PLAY_MM = 0.3
 """Between the wing and its saddle: covering on both; common practice, no source."""
 
@@ -144,7 +146,7 @@ class Body:
         cuts: tuple[Shape, ...],
     ) -> list[Part]:
         found = [solid_cut(c, blank, 0.0) for c in cuts]
-        rods = [solid_cut(self._dowel_shape(d), blank, self.shop.press_mm) for d in self.dowels]
+        rods = [solid_cut(self._dowel_shape(d), blank, self.shop.slip_mm) for d in self.dowels]
         outline = blank.outline
         holes = [h for c in (*found, *rods) for h in c.holes]
         body = outline.difference(shapely.union_all(holes)) if holes else outline
@@ -291,9 +293,38 @@ class Body:
 
     @property
     def joints(self) -> tuple[Joint, ...]:
-        return tuple(
-            Joint("former on side", p.id, "FSR", (0.0, 0.3), None)
-            for p in self.parts if p.id.startswith("F") and p.name.startswith("former")
+        """Formers between the sides, decks on both, dowels through the sides."""
+        kinds = {kind: [p for p in self.parts if p.step == step and p.id.startswith(kind)]
+                 for kind, step in (("FS", STEP), ("FT", DECKS), ("FB", DECKS), ("D", DECKS))}
+        formers = [p for p in self.parts if p.step == STEP and p not in kinds["FS"]]
+        down, up, across = (0.0, 0.0, -1.0), (0.0, 0.0, 1.0), (0.0, 1.0, 0.0)
+        found = [Joint("face to face", f.id, s.id, self._former_band(f), down)
+                 for f in formers for s in kinds["FS"] if _overlap(f, s)]
+        for decks, way in ((kinds["FT"], down), (kinds["FB"], up)):
+            found += [Joint("face to face", d.id, s.id, (0.0, GLUE_GAP_MM), way)
+                      for d in decks for s in kinds["FS"] if _overlap(d, s)]
+            found += [Joint("face to face", d.id, f.id, self._former_band(f), way)
+                      for d in decks for f in formers if _overlap(d, f)]
+        found += [Joint("dowel in hole", d.id, s.id, (0.0, self.shop.slip_mm + GLUE_GAP_MM),
+                        across) for d in kinds["D"] for s in kinds["FS"] if _overlap(d, s)]
+        return tuple(found)
+
+    def _former_band(self, former: Part) -> tuple[float, float]:
+        """A former cut square to the smaller of its faces gapes at the larger one."""
+        assert isinstance(former.form, Plate)
+        x = float(former.pose.origin[0])
+        steep = max(
+            self._steepest(x, values) for values in (
+                [s.width_mm / 2 for s in self.stations], [s.top_mm for s in self.stations],
+                [s.bottom_mm for s in self.stations])
         )
+        gape = former.form.thickness_mm * steep
+        return 0.0, self.shop.press_mm + gape + GLUE_GAP_MM
+
+
+def _overlap(a: Part, b: Part) -> bool:
+    """Their boxes meet."""
+    one, two = (np.array(p.solid.bounding_box()) for p in (a, b) if p.solid is not None)
+    return bool(np.all(one[:3] < two[3:] + 1.0) and np.all(two[:3] < one[3:] + 1.0))
 
 

@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from collections.abc import Callable
+from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 from functools import cached_property
 
@@ -246,15 +246,25 @@ class Drive:
                             f"{power.wire.upper()} silicone wire, 2 x {run / 1000:.2f} m",
                             step=WIRES, sigma=0.10)
 
-    @property
-    def joints(self) -> tuple[Joint, ...]:
-        """Mounts on their ribs are measured by the dry fit from the tongue's play."""
-        slip = self.shop.print_settings.slip_mm
-        return tuple(
-            Joint("mount on ribs", f"M{m.bay.index}R", f"bay {m.bay.index}", (0.0, 2 * slip),
-                  (1.0, 0.0, 0.0))
-            for m in self.mounts
-        )
+    def joints(self, ribs_of_bay: Mapping[int, tuple[str, ...]]) -> tuple[Joint, ...]:
+        """Mounts on the tongues of their ribs, and motors on their mounts.
+
+        Args:
+            ribs_of_bay: ids of the starboard ribs of each bay.
+        """
+        found = [self._seated(t) for t in self.thrusts]
+        band = (0.0, 2 * self.shop.print_settings.slip_mm)
+        for m in self.mounts:
+            for rib in ribs_of_bay[m.bay.index]:
+                found += [Joint("mount on tongue", f"M{m.bay.index}{side}", f"{rib[:-1]}{side}",
+                                band, (1.0, 0.0, 0.0)) for side in "RL"]
+        return tuple(found)
+
+    def _seated(self, line: Thrust) -> Joint:
+        """A motor's back on its mount, pushed on against its pull."""
+        tag = f"{line.motor}{'' if line.side == 'centre' else line.side[0].upper()}"
+        x, y, z = (float(-v) for v in line.pull)
+        return Joint("face to face", f"MOT{tag}", f"M{tag}", (0.0, 0.05), (x, y, z))
 
 
 def nose_wedge(shop: Shop, power: Power, seat: Pose) -> Shape:

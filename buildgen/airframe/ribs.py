@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Callable, Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from shapely.geometry import Polygon
@@ -18,6 +18,16 @@ from buildgen.problems import DesignError, Problem
 from buildgen.solid import Array, Pose
 
 STEP = "Wing: ribs on the spars"
+FACE_MM = (0.0, 0.1)
+
+
+@dataclass(frozen=True, eq=False)
+class Ribs:
+    """Every rib of both halves, their joints, and the starboard ribs of each motor's bay."""
+
+    parts: tuple[Part, ...]
+    joints: tuple[Joint, ...]
+    of_bay: Mapping[int, tuple[str, ...]]
 
 
 @dataclass(frozen=True, eq=False)
@@ -105,7 +115,7 @@ def _filled(
 def make_ribs(
     shop: Shop, wing: WingShape, bays: tuple[Bay, ...], members: tuple[Member, ...],
     extra: Mapping[int, Callable[[Pose], Cut]] | None = None,
-) -> tuple[list[Part], list[Joint]]:
+) -> Ribs:
     """Every rib of both halves with its joints.
 
     Args:
@@ -113,6 +123,8 @@ def make_ribs(
     """
     parts: list[Part] = []
     joints: list[Joint] = []
+    of_bay: dict[int, tuple[str, ...]] = {}
+    before: Part | None = None
     number = 0
     for place in places(shop, wing, bays):
         if not place.single:
@@ -122,10 +134,42 @@ def make_ribs(
         more = (extra[place.bay.index](blank.pose),) if extra and place.bay else ()
         part = _cut_rib(shop, place, blank, members, more)
         parts.append(part)
-        joints += [j for m in members if (j := m.joint(blank)) is not None]
-        if not place.single:
-            parts.append(part.mirrored(f"R{number}L", part.name.replace("right", "left")))
-    return parts, joints
+        left = None if place.single else part.mirrored(
+            f"R{number}L", part.name.replace("right", "left"))
+        parts += [left] if left else []
+        for member in members:
+            joints += _both_sides(member.joint(blank), member, left)
+        joints += _faces(place, part, left, before)
+        before = part
+        if place.bay:
+            of_bay[place.bay.index] = (*of_bay.get(place.bay.index, ()), part.id)
+    return Ribs(tuple(parts), tuple(joints), of_bay)
+
+
+def _both_sides(joint: Joint | None, member: Member, left: Part | None) -> list[Joint]:
+    """A member's joint with a rib, and the same on the other side."""
+    if joint is None:
+        return []
+    inner = member.parts[-1].id
+    if inner == joint.inner and left is None:
+        return [joint]
+    other = replace(joint, inner=inner, outer=left.id if left else joint.outer)
+    return [joint, replace(other, way=joint.way and _mirrored(joint.way))]
+
+
+def _mirrored(way: tuple[float, float, float]) -> tuple[float, float, float]:
+    return way[0], -way[1], way[2]
+
+
+def _faces(place: Place, part: Part, left: Part | None, before: Part | None) -> list[Joint]:
+    """Ribs glued face to face: the two root ribs, and those that meet at a break."""
+    if not place.against_inner or left is None:
+        return []
+    if before is None:
+        return [Joint("face to face", part.id, left.id, FACE_MM)]
+    other = f"{before.id[:-1]}L"
+    return [Joint("face to face", part.id, before.id, FACE_MM),
+            Joint("face to face", left.id, other, FACE_MM)]
 
 
 def _blank(shop: Shop, place: Place, id: str) -> Blank:

@@ -180,7 +180,26 @@ class SheetTail:
 
     @property
     def joints(self) -> tuple[Joint, ...]:
-        return (Joint("tab in slot", "V1", "T1", (0.0, 0.3), (0.0, 0.0, -1.0)),)
+        """Fin in the tailplane, tailplane on the fuselage, controls along their hinge lines."""
+        down = (0.0, 0.0, -1.0)
+        hinge = (0.8 * HINGE_GAP_MM, 1.2 * HINGE_GAP_MM)
+        return (
+            Joint("tab in slot", "V1", "T1", (0.0, self.shop.press_mm + 0.1), down),
+            Joint("hinged", "T2", "T1", hinge),
+            Joint("hinged", "V2", "V1", hinge),
+            *(Joint("face to face", "T1", deck, (0.0, 0.2), down) for deck in self._under()),
+        )
+
+    def _under(self) -> tuple[str, ...]:
+        """Ids of the fuselage top that carries the tailplane."""
+        if self.body is None:
+            return ()
+        middle = self.tailplane_le_mm + self.tailplane.hinge_mm / 2
+        return tuple(
+            p.id for p in self.body.parts
+            if p.id.startswith("FT") and p.solid is not None
+            and p.solid.bounding_box()[0] < middle < p.solid.bounding_box()[3]
+        )
 
 
 def _outline(given: Surface, area: float, halves: int, aspect: float) -> Outline:

@@ -31,6 +31,11 @@ class Member(Protocol):
         """How it meets the rib, for the dry fit; None where it does not."""
         ...
 
+    @property
+    def joints(self) -> tuple[Joint, ...]:
+        """How its parts meet other members."""
+        ...
+
 
 MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ...] = (
     spars.make,

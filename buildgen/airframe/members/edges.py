@@ -22,6 +22,8 @@ from buildgen.solid import Array, Common, Pose, Ruled, Shape, circle_points, mes
 
 STEP = "Wing: edges"
 FAR = 60.0
+BEVEL_MM = 0.3
+"""What glue may fill between a stick and a rib that is cut square to its sheet."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -133,7 +135,14 @@ class Edge:
     def joint(self, blank: Blank) -> Joint | None:
         if not self.cut(blank).holes:
             return None
-        return Joint("stick in notch", self.parts[0].id, blank.id, (0.0, 0.3), None)
+        ahead = -1.0 if self.kind == "stock" else 1.0
+        play = self.shop.press_mm
+        return Joint("stick in notch", self.parts[0].id, blank.id, (0.0, play + BEVEL_MM),
+                     (ahead, 0.0, 0.0))
+
+    @property
+    def joints(self) -> tuple[Joint, ...]:
+        return ()
 
 
 def leading(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edge]:
@@ -151,7 +160,7 @@ def leading(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edge
             yield Edge(
                 shop, given.kind, f"leading edge, panel {panel.index + 1}", letter,
                 "wing.leading_edge", given.material, given.size_mm, panel, inner, outer,
-                (low, high), panel.index == 0 and wing.flat_centre,
+                (low, high), i == 0 and panel.index == 0 and wing.flat_centre,
             )
 
 

@@ -20,7 +20,11 @@ from buildgen.solid import Array, Mirrored, Placed, Pose, Rod, Shape, Union, pri
 
 STEP = "Wing: ribs on the spars"
 BREAK = "Wing: panels joined"
+JOINER = "joiner in tube"
 END_PLAY_MM = 0.2
+GLUE_GAP_MM = 0.1
+"""A gap that a drop of thin glue still bridges; common practice, no source."""
+BEND_MM = 0.05
 ONE_PIECE_MM = 3.0
 """Halves of a spar that differ by less at root and tip are made in one straight piece."""
 
@@ -114,10 +118,23 @@ class SparRun:
     def joint(self, blank: Blank) -> Joint | None:
         if not (self.cut(blank).holes or self.cut(blank).circles):
             return None
-        kind = "spar in hole" if self.round else "stick in notch"
-        way = self.bar.axis if self.round else self.run[0].up
-        x, y, z = (float(v) for v in way)
-        return Joint(kind, self.parts[0].id, blank.id, (0.0, 0.6), (x, y, z))
+        closed = self.round or self.spar.place == "middle"
+        kind = "spar in hole" if closed else "strip in notch"
+        way = self.run[0].up * (1 if self.spar.place == "bottom" else -1)
+        play = self.shop.slip_mm if self.round else self.shop.press_mm
+        way = self.bar.axis if closed else way
+        return Joint(kind, self.parts[0].id, blank.id, (0.0, play + self._lean_mm(blank)),
+                     _vector(way))
+
+    def _lean_mm(self, blank: Blank) -> float:
+        """What the axis wanders through the plate, and some glue: the hole is that much wider."""
+        axis = blank.pose.rotation.T @ self.bar.axis
+        wander = blank.thickness_mm * float(np.hypot(axis[0], axis[1])) / abs(float(axis[2]))
+        return wander + GLUE_GAP_MM
+
+    @property
+    def joints(self) -> tuple[Joint, ...]:
+        return ()
 
 
 @dataclass(frozen=True, eq=False)
@@ -158,6 +175,26 @@ class Joiner:
 
     def joint(self, blank: Blank) -> Joint | None:
         return None
+
+    @property
+    def joints(self) -> tuple[Joint, ...]:
+        """Both arms in their bores: each slides in along its tube, before the other panel."""
+        here, there = self.parts[0].id, self.parts[-1].id
+        band = (0.0, self.outer.spar.inner_mm / 2 - _wire_radius(
+            self.shop, self.outer.spar, self.outer.key) + BEND_MM)
+        outward, far = self.outer.bar.axis, self.outer.parts
+        found = [Joint(JOINER, here, far[0].id, band, _vector(outward)),
+                 Joint(JOINER, there, far[-1].id, band, _vector(outward * (1, -1, 1)))]
+        if self.inner is not None:
+            back, near = -self.inner.bar.axis, self.inner.parts
+            found += [Joint(JOINER, here, near[0].id, band, _vector(back)),
+                      Joint(JOINER, there, near[-1].id, band, _vector(back * (1, -1, 1)))]
+        return tuple(found)
+
+
+def _vector(way: Array) -> tuple[float, float, float]:
+    x, y, z = (float(v) for v in way)
+    return x, y, z
 
 
 def _unit(v: Array) -> Array:

@@ -45,6 +45,10 @@ class Wiring:
     def joint(self, blank: Blank) -> Joint | None:
         return None
 
+    @property
+    def joints(self) -> tuple[Joint, ...]:
+        return ()
+
 
 def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Wiring]:
     """One way, where the definition asks for it."""
