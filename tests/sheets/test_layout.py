@@ -166,3 +166,33 @@ def test_lines_of_cuts_nowhere_run_along_each_other() -> None:
             assert one.is_simple
             for two in rings[i + 1:]:
                 assert shapely.intersection(one, two).length == 0
+
+
+@pytest.mark.parametrize(
+    ("effort", "wide", "expected"),
+    [
+        ("quick", 100.0, ["quick"]),
+        ("normal", 100.0, ["quick"]),  # all on one sheet: nothing to save
+        ("high", 100.0, ["high"]),
+        ("normal", 700.0, ["quick"]),  # two sheets, the second well used
+        ("normal", 492.0, ["quick", "normal"]),  # a second sheet hardly used
+    ],
+)
+def test_a_longer_search_only_where_it_may_save_a_sheet(
+    effort: str, wide: float, expected: list[str], monkeypatch: pytest.MonkeyPatch
+) -> None:
+    import buildgen.sheets.layout as layout
+
+    seen: list[str] = []
+    true_nest = layout.nest
+
+    def watched(*args, **given):  # type: ignore[no-untyped-def]
+        seen.append(given["effort"])
+        return true_nest(*args, **{**given, "effort": "quick"})
+
+    monkeypatch.setattr(layout, "nest", watched)
+    strips = tuple(plate(f"S{n}", box(0, 0, wide, 44.0)) for n in range(4))
+    if wide == 492.0:
+        strips = (*strips, plate("T", box(0, 0, 30, 3)))
+    laid(with_(Laser(effort=effort)), replace(small_kit(), parts=strips))  # type: ignore[arg-type]
+    assert seen == expected
