@@ -307,6 +307,8 @@ class Body:
                       for d in decks for f in formers if _overlap(d, f)]
         found += [Joint("dowel in hole", d.id, s.id, (0.0, self.shop.slip_mm + GLUE_GAP_MM),
                         across) for d in kinds["D"] for s in kinds["FS"] if _overlap(d, s)]
+        if self.firewall is not None:
+            found.append(Joint("face to face", "M1", formers[0].id, (0.0, 0.05), (1.0, 0.0, 0.0)))
         return tuple(found)
 
     def _former_band(self, former: Part) -> tuple[float, float]:

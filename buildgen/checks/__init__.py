@@ -6,7 +6,7 @@ here and one line in CHECKS.
 
 from __future__ import annotations
 
-from buildgen.checks import build, fly, power, weigh
+from buildgen.checks import build, fit, fly, power, weigh
 from buildgen.checks.desk import Desk
 from buildgen.checks.report import Check
 
@@ -20,6 +20,7 @@ CHECKS = (
     power.current,
     build.walls,
     build.bounds,
+    fit.dry_fit,
 )
 
 

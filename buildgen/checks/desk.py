@@ -7,6 +7,7 @@ from functools import cached_property
 
 from buildgen.airframe import Airframe
 from buildgen.checks.balance import Neutral, neutral_point
+from buildgen.checks.fit import Fit, fit_of
 from buildgen.checks.report import Balance, Check, Verdict
 from buildgen.design.schema import Definition
 from buildgen.part import Kit
@@ -23,6 +24,11 @@ class Desk:
     @property
     def definition(self) -> Definition:
         return self.frame.shop.definition
+
+    @cached_property
+    def fit(self) -> Fit:
+        """The dry fit of the kit."""
+        return fit_of(self.kit)
 
     @cached_property
     def neutral(self) -> Neutral:

@@ -17,7 +17,7 @@ from manifold3d import Manifold
 from shapely.geometry import MultiPolygon, Polygon, box
 
 from buildgen.airframe.blank import parts_of
-from buildgen.checks.fit_space import Solid, box_of, cropped, shared
+from buildgen.checks.fit_space import Solid, box_of, cropped, point, shared
 from buildgen.part import Bend, Joint, Plate
 from buildgen.solid import Array, Pose, polygons
 
@@ -37,6 +37,7 @@ WHOLE = 0.9
 """A section with less area than this of the largest runs out through the part's end."""
 DEEP_MM = 0.01
 STEP_MM = 0.05
+PARALLEL = 1e-9
 LEAST_CONTACT = 0.5
 """Share of the facing area that must lie within the band for glue to hold."""
 LEAST_MM2 = 4.0
@@ -75,7 +76,12 @@ class Measured:
         """Too little contact."""
         if self.contact_mm2 is None or self.facing_mm2 is None:
             return False
-        return self.contact_mm2 < max(LEAST_MM2, LEAST_CONTACT * self.facing_mm2)
+        return self.contact_mm2 < self.wanted_mm2
+
+    @property
+    def wanted_mm2(self) -> float:
+        """Least area in contact."""
+        return max(LEAST_MM2, LEAST_CONTACT * (self.facing_mm2 or 0.0))
 
 
 def measure(joint: Joint, inner: Solid, outer: Solid) -> Measured:
@@ -109,8 +115,7 @@ def _play(joint: Joint, inner: Solid, outer: Solid) -> Measured:
             where = pose((float(spot[0]), float(spot[1]), depth))
     if not np.isfinite(least):
         least, greatest = REACH_MM, REACH_MM
-    x, y, z = (float(v) for v in where)
-    return Measured(joint, (least, greatest), None, None, (x, y, z))
+    return Measured(joint, (least, greatest), None, None, point(where))
 
 
 def _middle(a: Manifold, b: Manifold) -> Array:
@@ -195,6 +200,9 @@ def _gaps(
 def _contact(joint: Joint, inner: Solid, outer: Solid) -> Measured:
     """Area that faces within the band, over the direction in which most does."""
     reach = joint.gap_mm[1] + DEEP_MM
+    parallel = _parallel(inner, outer, reach) if joint.way is None else None
+    if parallel is not None:
+        return Measured(joint, None, *parallel, point(_middle(inner.solid, outer.solid)))
     best, facing = 0.0, 0.0
     for way in _normals(joint, inner, outer):
         area = _closed(inner.solid, outer.solid, way * reach, way)
@@ -203,8 +211,23 @@ def _contact(joint: Joint, inner: Solid, outer: Solid) -> Measured:
             facing = _closed(inner.solid, outer.solid, way * (reach + 1.0), way)
             if best >= max(LEAST_MM2, LEAST_CONTACT * facing):
                 break
-    x, y, z = (float(v) for v in _middle(inner.solid, outer.solid))
-    return Measured(joint, None, best, max(best, facing), (x, y, z))
+    return Measured(joint, None, best, max(best, facing),
+                    point(_middle(inner.solid, outer.solid)))
+
+
+def _parallel(inner: Solid, outer: Solid, reach: float) -> tuple[float, float] | None:
+    """Two flat plates face to face: area in contact and area facing; None if they are not."""
+    if inner.slab is None or outer.slab is None:
+        return None
+    (mine, thick), (theirs, depth) = inner.slab, outer.slab
+    lean = float(mine.rotation[:, 2] @ theirs.rotation[:, 2])
+    if abs(lean) < 1 - PARALLEL:
+        return None
+    levels = sorted(float(theirs.local(mine((0.0, 0.0, z)))[2]) for z in (0.0, thick))
+    gap = max(levels[0] - depth, -levels[1])
+    area = _section(inner.solid, theirs, sum(levels) / 2).intersection(
+        _section(outer.solid, theirs, depth / 2)).area
+    return (area if gap <= reach else 0.0), area
 
 
 def _closed(inner: Manifold, outer: Manifold, shift: Array, way: Array) -> float:
