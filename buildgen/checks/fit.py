@@ -124,9 +124,10 @@ def fit_of(kit: Kit) -> Fit:
     """
     things = solids(kit)
     by_id = {thing.id: thing for thing in things}
+    near = tuple(pairs(things, CLASH_MM3))
     return Fit(
-        sum(1 for _ in pairs(things, CLASH_MM3)),
-        clashes(things),
+        len(near),
+        clashes(near),
         tuple(measure(j, by_id[j.inner], by_id[j.outer]) for j in kit.joints),
         ways(kit, by_id),
     )

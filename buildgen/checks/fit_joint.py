@@ -14,6 +14,7 @@ from itertools import pairwise
 import numpy as np
 import shapely
 from manifold3d import Manifold
+from shapely.affinity import translate
 from shapely.geometry import MultiPolygon, Polygon, box
 
 from buildgen.airframe.blank import parts_of
@@ -37,6 +38,8 @@ WHOLE = 0.9
 """A section with less area than this of the largest runs out through the part's end."""
 DEEP_MM = 0.01
 STEP_MM = 0.05
+FACING_MM = 1.0
+"""What lies this much beyond the band still faces, though glue does not hold it."""
 PARALLEL = 1e-9
 LEAST_CONTACT = 0.5
 """Share of the facing area that must lie within the band for glue to hold."""
@@ -51,7 +54,7 @@ class Measured:
         gap_mm: least and greatest play over the share of the outline that must be held; below
             zero where one part stands in the other. None for parts laid on each other.
         contact_mm2: area within the band, None where it is not asked for.
-        facing_mm2: area within the band and REACH_MM more.
+        facing_mm2: area within the band and FACING_MM more.
         at_mm: where the greatest play, or the joint's middle, is.
     """
 
@@ -203,15 +206,39 @@ def _contact(joint: Joint, inner: Solid, outer: Solid) -> Measured:
     parallel = _parallel(inner, outer, reach) if joint.way is None else None
     if parallel is not None:
         return Measured(joint, None, *parallel, point(_middle(inner.solid, outer.solid)))
+    if joint.kind == "stick in notch" and outer.slab is not None:
+        return _on_edge(joint, inner, outer, reach)
     best, facing = 0.0, 0.0
+    low = np.maximum(inner.box[0], outer.box[0]) - reach - FACING_MM
+    high = np.minimum(inner.box[1], outer.box[1]) + reach + FACING_MM
+    one, two = cropped(inner.solid, low, high), cropped(outer.solid, low, high)
     for way in _normals(joint, inner, outer):
-        area = _closed(inner.solid, outer.solid, way * reach, way)
+        area = _closed(one, two, way * reach, way)
         if area > best:
             best = area
-            facing = _closed(inner.solid, outer.solid, way * (reach + 1.0), way)
+            facing = _closed(one, two, way * (reach + FACING_MM), way)
             if best >= max(LEAST_MM2, LEAST_CONTACT * facing):
                 break
     return Measured(joint, None, best, max(best, facing),
+                    point(_middle(inner.solid, outer.solid)))
+
+
+def _on_edge(joint: Joint, inner: Solid, outer: Solid, reach: float) -> Measured:
+    """A stick pushed on the edge of a flat plate: the same on sections through the plate."""
+    assert outer.slab is not None and joint.way is not None
+    pose, thick = outer.slab
+    way = (pose.rotation.T @ np.array(joint.way))[:2]
+    areas = np.zeros(2)
+    for depth in (0.02 * thick, 0.5 * thick, 0.98 * thick):
+        mine = _section(inner.solid, pose, depth)
+        if mine.is_empty:
+            continue
+        theirs = _outer_section(outer, pose, depth, mine)
+        for n, push in enumerate((reach, reach + FACING_MM)):
+            one, two = (translate(mine, *(way * p)).intersection(theirs).area
+                        for p in (push, push + STEP_MM))
+            areas[n] += (two - one) / STEP_MM * thick / 3
+    return Measured(joint, None, float(areas[0]), float(areas.max()),
                     point(_middle(inner.solid, outer.solid)))
 
 

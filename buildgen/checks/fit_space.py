@@ -6,7 +6,7 @@ simpler of the two cut down to the common box.
 
 from __future__ import annotations
 
-from collections.abc import Iterator, Sequence
+from collections.abc import Iterable, Iterator, Sequence
 from dataclasses import dataclass
 from functools import cached_property
 
@@ -23,6 +23,8 @@ Both solids of a pair stand within their chord error of the true shape, 0.01 mm 
 25 mm2 (a rib against a stick) may so seem to share 0.5 mm3. Holes are circumscribed and rods
 inscribed, so true fits share nothing at all. One stroke of the sanding block takes more.
 """
+PLAIN_FACES = 100
+"""A solid of fewer triangles is not worth cutting down first."""
 EDGE_MM = 0.01
 """Room left round a common box, so that no face is cut in its own plane."""
 MOVING = ("propeller",)
@@ -93,7 +95,9 @@ def shared(a: Manifold, b: Manifold) -> Manifold:
     if np.any(high <= low):
         return Manifold()
     small, large = sorted((a, b), key=lambda s: s.num_tri())
-    return cropped(small, low, high) ^ large
+    if small.num_tri() > PLAIN_FACES:
+        small = cropped(small, low, high)
+    return small ^ large
 
 
 @dataclass(frozen=True, slots=True)
@@ -107,9 +111,11 @@ class Clash:
     size_mm: tuple[float, float, float]
 
 
-def clashes(things: Sequence[Solid], limit_mm3: float = CLASH_MM3) -> tuple[Clash, ...]:
+def clashes(
+    near: Iterable[tuple[Solid, Solid]], limit_mm3: float = CLASH_MM3
+) -> tuple[Clash, ...]:
     """Every pair that shares more than the limit, the worst first."""
-    found = [c for a, b in pairs(things, limit_mm3) if (c := _clash(a, b, limit_mm3)) is not None]
+    found = [c for a, b in near if (c := _clash(a, b, limit_mm3)) is not None]
     return tuple(sorted(found, key=lambda c: (-c.volume_mm3, c.first, c.second)))
 
 

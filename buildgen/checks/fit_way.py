@@ -20,7 +20,7 @@ from shapely.affinity import translate
 from shapely.geometry import Polygon
 
 from buildgen.airframe.blank import parts_of
-from buildgen.checks.fit_space import CLASH_MM3, Clash, Solid, box_of, point, shared
+from buildgen.checks.fit_space import CLASH_MM3, Clash, Solid, box_of, cropped, point, shared
 from buildgen.part import Joint, Kit, Plate, Stick
 from buildgen.solid import Array, Mirrored, Placed, Prism, Shape, Union, mesh
 
@@ -105,24 +105,30 @@ def _standing(
 
 def _blocked(thing: Solid, way: Array, others: Sequence[Solid], both: bool) -> Clash | None:
     """The worst in the way; what passes a hole may come from either end."""
-    worst = [_worst(thing, -sign * way, others) for sign in ((1, -1) if both else (1,))]
-    if None in worst:
-        return None
-    return min((c for c in worst if c), key=lambda c: c.volume_mm3)
+    first = _worst(thing, -way, others)
+    if first is None or not both:
+        return first
+    second = _worst(thing, way, others)
+    return None if second is None else min((first, second), key=lambda c: c.volume_mm3)
 
 
 def _worst(thing: Solid, out: Array, others: Sequence[Solid]) -> Clash | None:
     """What the part meets most of on its way out; None where it comes out free."""
     length = _length(thing, out, others)
+    low, high = thing.box
+    low, high = np.minimum(low, low + out * length), np.maximum(high, high + out * length)
+    near = [(o.id, o.solid) for o in others
+            if np.all(o.box[0] < high) and np.all(o.box[1] > low)]
+    if not _in_one(thing, out):
+        near = [(id, cropped(solid, low, high)) for id, solid in near]
     found: Clash | None = None
     for swept in _swept(thing, out, length):
-        for other in others:
-            common = shared(swept, other.solid)
+        for id, solid in near:
+            common = shared(swept, solid)
             volume = 0.0 if common.is_empty() else float(common.volume())
             if volume > max(CLASH_MM3, found.volume_mm3 if found else 0.0):
                 low, high = box_of(common)
-                found = Clash(thing.id, other.id, volume, point((low + high) / 2),
-                              point(high - low))
+                found = Clash(thing.id, id, volume, point((low + high) / 2), point(high - low))
     return found
 
 
@@ -140,16 +146,22 @@ def _swept(thing: Solid, out: Array, length: float) -> Iterator[Manifold]:
             solid = mesh(Placed(piece, thing.part.pose))
             yield Manifold.batch_hull([solid, solid.translate(out * length)])
         return
-    if isinstance(form, Plate) and form.bend is None:
-        local = thing.part.pose.rotation.T @ out
-        if abs(local[2]) < IN_PLANE:
-            shape = _carried(form.shape2d, local[:2] * length)
-            yield mesh(Placed(Prism(shape, form.thickness_mm), thing.part.pose))
-            return
+    if isinstance(form, Plate) and _in_one(thing, out):
+        by = (thing.part.pose.rotation.T @ out)[:2] * length
+        shape = Prism(_carried(form.shape2d, by), form.thickness_mm)
+        yield mesh(Placed(shape, thing.part.pose))
+        return
     steps = [s for s in STEPS_MM if s < length]
     steps += list(np.arange(STEPS_MM[-1] + EVERY_MM, length, EVERY_MM))
     for step in steps:
         yield thing.solid.translate(out * step)
+
+
+def _in_one(thing: Solid, out: Array) -> bool:
+    """What it sweeps is known in one solid: sticks, and flat plates carried in their plane."""
+    if isinstance(thing.part.form, Stick):
+        return True
+    return thing.slab is not None and abs(float(thing.slab[0].rotation[:, 2] @ out)) < IN_PLANE
 
 
 def _bars(shape: Shape) -> list[Shape]:
