@@ -24,17 +24,17 @@ from buildgen.solid import Array, Pose, polygons
 
 LAID = ("face to face", "stick in notch")
 """Kinds that glue holds face to face, and kinds that are measured all round: the share of the
-inner part's outline that must lie within the band (a notch holds three sides of four, a hinge
-line one edge)."""
+inner part's outline that must lie within the band (a notch holds the floor and most of both
+sides, a hinge line one edge)."""
 AROUND = {"spar in hole": 1.0, "joiner in tube": 1.0, "dowel in hole": 1.0, "tab in slot": 0.9,
-          "mount on tongue": 0.9, "strip in notch": 0.6, "hinged": 0.2}
+          "mount on tongue": 0.9, "strip in notch": 0.5, "hinged": 0.2}
 DEPTHS = {"dowel in hole": (0.4, 0.5, 0.6), "mount on tongue": (0.1, 0.2, 0.3)}
 """Where sections are taken, as shares of the depth in which both parts reach: in the middle of a
 side that stands oblique, ahead of the nose on a tongue."""
 SAMPLE_MM = 0.5
 REACH_MM = 3.0
 """How far round the inner part the outer one is looked at; a gap beyond it is no joint."""
-WHOLE = 0.9
+WHOLE = 0.985
 """A section with less area than this of the largest runs out through the part's end."""
 DEEP_MM = 0.01
 STEP_MM = 0.05
@@ -43,7 +43,8 @@ FACING_MM = 1.0
 PARALLEL = 1e-9
 LEAST_CONTACT = 0.5
 """Share of the facing area that must lie within the band for glue to hold."""
-LEAST_MM2 = 4.0
+LEAST_MM2 = 2.0
+"""A stick of 3 mm on half the edge of a 2 mm centre rib, with some of it sanded off."""
 
 
 @dataclass(frozen=True, slots=True)

@@ -127,10 +127,15 @@ class SparRun:
                      _vector(way))
 
     def _lean_mm(self, blank: Blank) -> float:
-        """What the axis wanders through the plate, and some glue: the hole is that much wider."""
+        """What the axis wanders through the plate, and some glue: the hole is that much wider.
+
+        Twice so on the centre line, where one hole serves both halves of a swept spar.
+        """
         axis = blank.pose.rotation.T @ self.bar.axis
         wander = blank.thickness_mm * float(np.hypot(axis[0], axis[1])) / abs(float(axis[2]))
-        return wander + GLUE_GAP_MM
+        ends = sorted(float(blank.pose.local(p)[2]) for p in (self.a, self.b))
+        inside = any(0.0 < z < blank.thickness_mm for z in ends)
+        return (2 if inside else 1) * wander + GLUE_GAP_MM
 
     @property
     def joints(self) -> tuple[Joint, ...]:
@@ -144,6 +149,12 @@ class Joiner:
     shop: Shop
     inner: SparRun | None
     outer: SparRun
+    on_centre_rib: bool = False
+    """Both tubes share the rib on the centre line: the joiner goes in with them, not later."""
+
+    @property
+    def step(self) -> str:
+        return STEP if self.on_centre_rib and self.inner is None else BREAK
 
     @cached_property
     def parts(self) -> tuple[Part, ...]:
@@ -163,7 +174,7 @@ class Joiner:
         made = self.shop.stick(
             number if self.inner is None else f"{number}R",
             f"joiner of spar {self.outer.number}, bent {bend:.1f} degrees",
-            spar.joiner_material, size, Union((arm, other)), 2 * reach, BREAK, key,
+            spar.joiner_material, size, Union((arm, other)), 2 * reach, self.step, key,
             ((reach, bend),),
         )
         if self.inner is None:
@@ -231,7 +242,7 @@ def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[SparRun
         yield from pieces
         if spar.kind == "tube" and spar.inner_mm and spar.joiner_mm:
             if pieces and spar.from_mm == 0 and not pieces[0].through:
-                yield Joiner(shop, None, pieces[0])
+                yield Joiner(shop, None, pieces[0], wing.flat_centre)
             for inner, outer in zip(pieces, pieces[1:], strict=False):
                 yield Joiner(shop, inner, outer)
 
