@@ -116,7 +116,8 @@ class SparRun:
         return bar_cut(self.bar, blank, play)
 
     def joint(self, blank: Blank) -> Joint | None:
-        if not (self.cut(blank).holes or self.cut(blank).circles):
+        cut = self.cut(blank)
+        if not (cut.holes or cut.circles) or self._held_mm(blank) < blank.thickness_mm / 2:
             return None
         closed = self.round or self.spar.place == "middle"
         kind = "spar in hole" if closed else "strip in notch"
@@ -127,15 +128,16 @@ class SparRun:
                      _vector(way))
 
     def _lean_mm(self, blank: Blank) -> float:
-        """What the axis wanders through the plate, and some glue: the hole is that much wider.
-
-        Twice so on the centre line, where one hole serves both halves of a swept spar.
-        """
+        """What the axis wanders through the plate, and some glue: the hole is that much wider."""
         axis = blank.pose.rotation.T @ self.bar.axis
         wander = blank.thickness_mm * float(np.hypot(axis[0], axis[1])) / abs(float(axis[2]))
-        ends = sorted(float(blank.pose.local(p)[2]) for p in (self.a, self.b))
-        inside = any(0.0 < z < blank.thickness_mm for z in ends)
-        return (2 if inside else 1) * wander + GLUE_GAP_MM
+        return wander + GLUE_GAP_MM
+
+    def _held_mm(self, blank: Blank) -> float:
+        """How deep it stands in the plate: on the centre line the ends of swept halves hardly do."""
+        start = self.b * (1, -1, 1) if self.through else self.a
+        low, high = sorted(float(blank.pose.local(p)[2]) for p in (start, self.b))
+        return min(high, blank.thickness_mm) - max(low, 0.0)
 
     @property
     def joints(self) -> tuple[Joint, ...]:
