@@ -21,8 +21,8 @@ from shapely.geometry import Polygon
 
 from buildgen.airframe.blank import parts_of
 from buildgen.checks.fit_space import CLASH_MM3, Clash, Solid, box_of, cropped, point, shared
-from buildgen.part import Joint, Kit, Plate, Stick
-from buildgen.solid import Array, Mirrored, Placed, Prism, Shape, Union, mesh
+from buildgen.part import Joint, Kit, Plate, Printed, Stick
+from buildgen.solid import Array, Mirrored, Placed, Prism, Rod, Shape, Union, mesh
 
 BEYOND_MM = 1.0
 STEPS_MM = (0.5, 1.0, 2.0, 3.0, 4.0, 6.0, 8.0)
@@ -141,7 +141,7 @@ def _length(thing: Solid, out: Array, others: Sequence[Solid]) -> float:
 def _swept(thing: Solid, out: Array, length: float) -> Iterator[Manifold]:
     """What the part covers on its way out, in one solid or in steps."""
     form = thing.part.form
-    if isinstance(form, Stick):
+    if isinstance(form, Stick | Printed) and _in_one(thing, out):
         for piece in _bars(form.shape):
             solid = mesh(Placed(piece, thing.part.pose))
             yield Manifold.batch_hull([solid, solid.translate(out * length)])
@@ -158,8 +158,9 @@ def _swept(thing: Solid, out: Array, length: float) -> Iterator[Manifold]:
 
 
 def _in_one(thing: Solid, out: Array) -> bool:
-    """What it sweeps is known in one solid: sticks, and flat plates carried in their plane."""
-    if isinstance(thing.part.form, Stick):
+    """What it sweeps is known in one solid: bars, and flat plates carried in their plane."""
+    form = thing.part.form
+    if isinstance(form, Stick) or (isinstance(form, Printed) and isinstance(form.shape, Rod)):
         return True
     return thing.slab is not None and abs(float(thing.slab[0].rotation[:, 2] @ out)) < IN_PLANE
 

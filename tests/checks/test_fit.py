@@ -234,7 +234,8 @@ def test_a_rod_in_a_hole_of_its_own_diameter_shares_nothing() -> None:
 @pytest.mark.parametrize(("gap", "area"), [(0.0, 60.0), (0.2, 60.0), (0.4, 0.0)])
 def test_contact_is_the_area_within_the_band(gap: float, area: float) -> None:
     one, two = (Part(i, i, "balsa", Stick(Box(low, high), 20.0, "block"), Pose(), "1", "")
-                for i, low, high in (("a", (0, 0, gap), (20, 3, 5)), ("b", (-5, -5, -5), (30, 9, 0))))
+                for i, low, high in (("a", (0, 0, gap), (20, 3, 5)),
+                                     ("b", (-5, -5, -5), (30, 9, 0))))
     joint = Joint("face to face", "a", "b", (0.0, 0.3), (0.0, 0.0, -1.0))
     solids = [Solid(p, p.solid) for p in (one, two) if p.solid is not None]
     assert measure(joint, *solids).contact_mm2 == pytest.approx(area, abs=1e-6)

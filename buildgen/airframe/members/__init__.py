@@ -11,7 +11,7 @@ from typing import Protocol
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut
-from buildgen.airframe.members import edges, spars, wiring
+from buildgen.airframe.members import edges, joiners, spars, wiring
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
 from buildgen.part import Joint, Part
@@ -39,6 +39,7 @@ class Member(Protocol):
 
 MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ...] = (
     spars.make,
+    joiners.make,
     edges.leading,
     edges.trailing,
     wiring.make,

@@ -1,4 +1,4 @@
-"""Spars: round tubes and rods, and square strips in notches; joiners at dihedral breaks."""
+"""Spars: round tubes and rods, and square strips in notches."""
 
 from __future__ import annotations
 
@@ -16,15 +16,12 @@ from buildgen.airframe.surface import AFT, Panel, WingShape
 from buildgen.design.schema import Spar
 from buildgen.part import Joint, Part
 from buildgen.problems import DesignError, Problem
-from buildgen.solid import Array, Mirrored, Placed, Pose, Rod, Shape, Union, prism_between
+from buildgen.solid import Array, Placed, Pose, Rod, Shape, prism_between
 
 STEP = "Wing: ribs on the spars"
-BREAK = "Wing: panels joined"
-JOINER = "joiner in tube"
 END_PLAY_MM = 0.2
 GLUE_GAP_MM = 0.1
 """A gap that a drop of thin glue still bridges; common practice, no source."""
-BEND_MM = 0.05
 ONE_PIECE_MM = 3.0
 """Halves of a spar that differ by less at root and tip are made in one straight piece."""
 
@@ -125,7 +122,7 @@ class SparRun:
         play = self.shop.slip_mm if self.round else self.shop.press_mm
         way = self.bar.axis if closed else way
         return Joint(kind, self.parts[0].id, blank.id, (0.0, play + self._lean_mm(blank)),
-                     _vector(way))
+                     vector(way))
 
     def _lean_mm(self, blank: Blank) -> float:
         """What the axis wanders through the plate, and some glue: the hole is that much wider."""
@@ -134,7 +131,7 @@ class SparRun:
         return wander + GLUE_GAP_MM
 
     def _held_mm(self, blank: Blank) -> float:
-        """How deep it stands in the plate: on the centre line the ends of swept halves hardly do."""
+        """How deep it stands in the plate: ends of swept halves hardly do on the centre line."""
         start = self.b * (1, -1, 1) if self.through else self.a
         low, high = sorted(float(blank.pose.local(p)[2]) for p in (start, self.b))
         return min(high, blank.thickness_mm) - max(low, 0.0)
@@ -144,109 +141,27 @@ class SparRun:
         return ()
 
 
-@dataclass(frozen=True, eq=False)
-class Joiner:
-    """A bent rod in the bores of two tubes that meet at a dihedral break, or at the root."""
-
-    shop: Shop
-    inner: SparRun | None
-    outer: SparRun
-    on_centre_rib: bool = False
-    """Both tubes share the rib on the centre line: the joiner goes in with them, not later."""
-
-    @property
-    def step(self) -> str:
-        return STEP if self.on_centre_rib and self.inner is None else BREAK
-
-    @cached_property
-    def parts(self) -> tuple[Part, ...]:
-        spar = self.outer.spar
-        radius = _wire_radius(self.shop, spar, self.outer.key)
-        reach = spar.joiner_mm
-        here = self.outer.meet
-        out = here + reach * self.outer.bar.axis
-        back = out * (1, -1, 1) if self.inner is None else here - reach * self.inner.bar.axis
-        arm = _rod(here, out, radius)
-        other: Shape = Mirrored(arm, 1) if self.inner is None else _rod(here, back, radius)
-        bend = float(np.degrees(np.arccos(np.clip(
-            np.dot(_unit(here - back), _unit(out - here)), -1, 1))))
-        number = f"J{self.outer.letter}"
-        size = f"{2 * radius:g} rod"
-        key = self.outer.key
-        made = self.shop.stick(
-            number if self.inner is None else f"{number}R",
-            f"joiner of spar {self.outer.number}, bent {bend:.1f} degrees",
-            spar.joiner_material, size, Union((arm, other)), 2 * reach, self.step, key,
-            ((reach, bend),),
-        )
-        if self.inner is None:
-            return (made,)
-        return made, made.mirrored(f"{number}L", made.name)
-
-    def cut(self, blank: Blank) -> Cut:
-        return Cut()
-
-    def joint(self, blank: Blank) -> Joint | None:
-        return None
-
-    @property
-    def joints(self) -> tuple[Joint, ...]:
-        """Both arms in their bores: each slides in along its tube, before the other panel."""
-        here, there = self.parts[0].id, self.parts[-1].id
-        band = (0.0, self.outer.spar.inner_mm / 2 - _wire_radius(
-            self.shop, self.outer.spar, self.outer.key) + BEND_MM)
-        outward, far = self.outer.bar.axis, self.outer.parts
-        found = [Joint(JOINER, here, far[0].id, band, _vector(outward)),
-                 Joint(JOINER, there, far[-1].id, band, _vector(outward * (1, -1, 1)))]
-        if self.inner is not None:
-            back, near = -self.inner.bar.axis, self.inner.parts
-            found += [Joint(JOINER, here, near[0].id, band, _vector(back)),
-                      Joint(JOINER, there, near[-1].id, band, _vector(back * (1, -1, 1)))]
-        return tuple(found)
-
-
-def _vector(way: Array) -> tuple[float, float, float]:
+def vector(way: Array) -> tuple[float, float, float]:
+    """As a joint wants its way."""
     x, y, z = (float(v) for v in way)
     return x, y, z
 
 
-def _unit(v: Array) -> Array:
-    return np.asarray(v / np.linalg.norm(v))
-
-
-def _rod(start: Array, end: Array, radius: float) -> Shape:
-    pose = Pose.at(start, end - start, AFT)
-    return Placed(Rod(radius, float(np.linalg.norm(end - start))), pose)
-
-
-def _wire_radius(shop: Shop, spar: Spar, key: str) -> float:
-    """The thickest stock rod that slides into the bore."""
-    room = spar.inner_mm - 2 * shop.slip_mm + 0.1
-    stock = shop.material(spar.joiner_material, f"{key}.joiner_material", "rod").diameters_mm
-    fits = [d for d in stock if d <= room]
-    if not fits:
-        raise DesignError(
-            Problem(f"{key}.inner_mm", f"No {spar.joiner_material} goes into a bore of"
-                    f" {spar.inner_mm:g} mm.", "Take a wider tube, or end the spar at the break.")
-        )
-    return max(fits) / 2
-
-
-def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[SparRun | Joiner]:
-    """Every spar, split at dihedral breaks, with the joiners between its pieces."""
+def pieces(shop: Shop, wing: WingShape) -> Iterable[tuple[Spar, list[SparRun]]]:
+    """Every spar of the definition with its pieces, split at dihedral breaks."""
     for number, spar in enumerate(shop.definition.wing.spar, start=1):
         _check(spar, number, shop)
-        pieces = [
+        yield spar, [
             piece
             for i, run in enumerate(wing.runs)
             if (piece := _piece(shop, wing, spar, number, run, i)) is not None
         ]
-        yield from pieces
-        if spar.kind == "tube" and spar.inner_mm and spar.joiner_mm:
-            if pieces and spar.from_mm == 0 and not pieces[0].through:
-                yield Joiner(shop, None, pieces[0], wing.flat_centre)
-            for inner, outer in zip(pieces, pieces[1:], strict=False):
-                yield Joiner(shop, inner, outer)
+
+
+def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[SparRun]:
+    """Every piece of every spar."""
+    for _, found in pieces(shop, wing):
+        yield from found
 
 
 def _check(spar: Spar, number: int, shop: Shop) -> None:
