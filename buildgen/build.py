@@ -45,7 +45,12 @@ class Build(Kit):
     @cached_property
     def checks(self) -> tuple[Check, ...]:
         """Every check with its verdict."""
-        return run_checks(Desk(self, self._frame, self.balance))
+        return run_checks(self.desk)
+
+    @cached_property
+    def desk(self) -> Desk:
+        """What the checks look at, the dry fit among it."""
+        return Desk(self, self._frame, self.balance)
 
     @cached_property
     def cut_before(self) -> CutBefore:

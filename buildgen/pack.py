@@ -94,7 +94,7 @@ def package_of(build: Build, reports: tuple[Any, ...] = ()) -> Package:
     assert build.design is not None
     return Package(
         build, build.design.definition, build.sheets, build.stick_plans, build.balance,
-        build.checks, reports, build.design.text, build.design.file,
+        build.checks, reports, build.design.text, build.design.file, build.desk.fit,
     )
 
 

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import Any, TypeAlias
 
 from buildgen.checks.report import Balance, Check
+from buildgen.packet.fit_json import fit_json
 from buildgen.packet.package import Package
 from buildgen.part import Part, Plate, Stick
 
@@ -34,6 +35,7 @@ def kit_json(package: Package) -> Json:
         "sheets": [_sheet(sheet) for sheet in package.sheets],
         "balance": balance_json(package.balance),
         "checks": [check_json(check) for check in package.checks],
+        "fit": fit_json(package.fit),
     }
 
 

@@ -10,6 +10,7 @@ from buildgen.checks.report import WORST_FIRST, Balance, Check
 from buildgen.part import Kit, Part, Plate, Printed
 
 if TYPE_CHECKING:
+    from buildgen.checks.fit import Fit
     from buildgen.design.schema import Definition
     from buildgen.prints.make import Report
     from buildgen.sheets.layout import Sheet
@@ -26,6 +27,7 @@ class Package:
         print_reports: one for each file stem of printed solids, as the printers' room gives them.
         source_text: the definition as it was read, byte for byte.
         source_name: its file name.
+        fit: the dry fit, None where none was made.
     """
 
     kit: Kit
@@ -37,6 +39,7 @@ class Package:
     print_reports: tuple[Report, ...] = ()
     source_text: str = ""
     source_name: str = ""
+    fit: Fit | None = None
 
     @cached_property
     def sheet_of(self) -> dict[str, Sheet]:

@@ -212,3 +212,20 @@ CAUTION_GROUPS: tuple[tuple[str, str, tuple[str, ...]], ...] = (
     )),
 )
 CAUTION_SEEN = "General practice of the workshop and the flying field; no single source."
+
+# ------------------------------------------------------------------ dry fit
+DRY_FIT = "Dry fit"
+FIT_TEXT = (
+    "The kit was put together on the computer, every part as a solid in its place: {pairs} pairs "
+    "that lie near each other, none of which may share more than {limit} mm3; {joints} joints, "
+    "each measured; {ways} ways in, each swept in the order of the build steps."
+)
+JOINT, COUNT = "Joint", "Number"
+LEAST_PLAY, MOST_PLAY = "Least play, mm", "Greatest, mm"
+CONTACT, FIT_BAND = "Least contact, mm²", "Limit, mm"
+FINDINGS, FINDING, FIT_SAYS = "What does not fit", "Finding", "Where"
+NO_FINDINGS = "Nothing: every pair, joint and way in is as it should be."
+FAULTS = {
+    "clash": "one space", "tight": "too tight", "loose": "too loose",
+    "no contact": "no contact", "no way in": "no way in",
+}

@@ -16,6 +16,7 @@ from reportlab.platypus import Flowable
 from buildgen.packet.balance_pages import balance_pages
 from buildgen.packet.bill import bill
 from buildgen.packet.cautions import caution_pages
+from buildgen.packet.fit_pages import fit_pages
 from buildgen.packet.flight_pages import flight_pages
 from buildgen.packet.front import front
 from buildgen.packet.kit_json import Json, kit_json, part_json
@@ -65,6 +66,7 @@ def packet_pdf(package: Package) -> bytes:
         print_pages(package),
         stick_pages(package),
         step_pages(package),
+        fit_pages(package),
         flight_pages(package),
         index_pages(package),
     )
