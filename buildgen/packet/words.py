@@ -217,7 +217,7 @@ CAUTION_SEEN = "General practice of the workshop and the flying field; no single
 DRY_FIT = "Dry fit"
 FIT_TEXT = (
     "The kit was put together on the computer, every part as a solid in its place: {pairs} pairs "
-    "that lie near each other, none of which may share more than {limit} mm3; {joints} joints, "
+    "that lie near each other, none of which may share more than {limit} mm³; {joints} joints, "
     "each measured; {ways} ways in, each swept in the order of the build steps."
 )
 JOINT, COUNT = "Joint", "Number"
