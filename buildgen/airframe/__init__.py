@@ -69,7 +69,8 @@ def shape_airframe(
     shop = Shop(definition, shelf)
     check_materials(shop)
     wing = shape_wing(definition.wing, find_sections(definition.wing, folders))
-    body = Body(shop, wing, definition.fuselage) if definition.fuselage else None
+    seat = SheetTail(shop, wing, None, definition.tail).seat if definition.tail else None
+    body = Body(shop, wing, definition.fuselage, seat) if definition.fuselage else None
     tail = SheetTail(shop, wing, body, definition.tail) if definition.tail else None
     drive = Drive(shop, wing, body.nose_seat if body else None)
     return Airframe(shop, wing, body, tail, drive)

@@ -16,6 +16,7 @@ from shapely.geometry import Polygon
 
 from buildgen.airframe.blank import Blank, Cut, apply, parts_of, solid_cut
 from buildgen.airframe.power import firewall_circles
+from buildgen.airframe.seat import Seat, seated
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
 from buildgen.design.schema import Fuselage, Station
@@ -38,6 +39,8 @@ FORMER_WEB_MM = 7.0
 CORNER_MM = 4.0
 GLUE_GAP_MM = 0.15
 """A gap that glue still fills; common practice, no source."""
+FOLD_MM = 0.05
+"""What a fold of the side within a hole shifts one half of it."""
 SADDLE_PLAY_MM = 0.3
 """Between the wing and its saddle: covering on both; common practice, no source."""
 
@@ -49,10 +52,16 @@ class Body:
     shop: Shop
     wing: WingShape
     given: Fuselage
+    seat: Seat | None = None
+    """Of the tailplane."""
 
-    @property
+    @cached_property
     def stations(self) -> tuple[Station, ...]:
-        return tuple(sorted(self.given.station, key=lambda s: s.x_mm))
+        return seated(self.given.station, self.seat)
+
+    def _number(self, station: Station) -> int:
+        """As the definition counts it along the fuselage."""
+        return 1 + sum(s.x_mm < station.x_mm for s in self.given.station)
 
     @cached_property
     def side_mm(self) -> float:
@@ -273,8 +282,8 @@ class Body:
     def parts(self) -> tuple[Part, ...]:
         g = self.given
         formers = [
-            f for i, s in enumerate(self.stations, start=1)
-            if s.former and (f := self._former(i, s)) is not None
+            f for s in self.stations
+            if s.former and (f := self._former(self._number(s), s)) is not None
         ]
         right = self._sheet("FSR", "fuselage side, right", g.side_material, g.side_thickness_mm,
                             self.side_blank, STEP, self._clear_of())
@@ -305,8 +314,9 @@ class Body:
                       for d in decks for s in kinds["FS"] if _overlap(d, s)]
             found += [Joint("face to face", d.id, f.id, self._former_band(f), way)
                       for d in decks for f in formers if _overlap(d, f)]
-        found += [Joint("dowel in hole", d.id, s.id, (0.0, self.shop.slip_mm + GLUE_GAP_MM),
-                        across) for d in kinds["D"] for s in kinds["FS"] if _overlap(d, s)]
+        band = (0.0, self.shop.slip_mm + GLUE_GAP_MM + FOLD_MM)
+        found += [Joint("dowel in hole", d.id, s.id, band, across)
+                  for d in kinds["D"] for s in kinds["FS"] if _overlap(d, s)]
         if self.firewall is not None:
             found.append(Joint("face to face", "M1", formers[0].id, (0.0, 0.05), (1.0, 0.0, 0.0)))
         return tuple(found)

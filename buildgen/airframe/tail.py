@@ -12,6 +12,7 @@ from buildgen.aero.planform import Panel as PlanPanel
 from buildgen.aero.planform import area_mm2, mean_aerodynamic_chord
 from buildgen.airframe.blank import Blank, apply, lightening, solid_cut
 from buildgen.airframe.fuselage import Body
+from buildgen.airframe.seat import Seat
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
 from buildgen.design.schema import Surface, Tail
@@ -97,7 +98,14 @@ class SheetTail:
         """z of the tailplane's lower face: on top of the fuselage."""
         if self.body is None:
             return 0.0
-        return self.body.top(self.tailplane_le_mm + self.tailplane.root_mm / 3)
+        return self.body.top(self.tailplane_le_mm)
+
+    @property
+    def seat(self) -> Seat:
+        """What the top of the fuselage follows under the fixed tailplane and the elevator."""
+        slope = -float(np.tan(np.radians(self.given.tailplane.incidence_deg)))
+        start = self.tailplane_le_mm
+        return Seat(start, start + self.tailplane.root_mm, slope)
 
     @cached_property
     def flat(self) -> Pose:

@@ -25,8 +25,10 @@ from buildgen.solid import Array, Mirrored, Placed, Pose, Rod, Shape, Union
 
 BREAK = "Wing: panels joined"
 SLEEVE_MATERIAL = "petg"
-PACKED_MM = 0.6
+PACKED_MM = 0.65
 """Play on each side that thread and epoxy still fill; common practice, no source."""
+SLEEVE_PLAY_MM = 0.1
+"""Inside and outside of a sleeve, which is sanded to fit."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -62,7 +64,12 @@ class Joiner:
     @property
     def wall_mm(self) -> float:
         """Of a sleeve that would fill the bore, with the play it needs inside and outside."""
-        return self.outer.spar.inner_mm / 2 - self.radius_mm - 2 * self.shop.slip_mm
+        return self.outer.spar.inner_mm / 2 - self.radius_mm - 2 * SLEEVE_PLAY_MM
+
+    @property
+    def sleeved(self) -> bool:
+        """The bore is so much wider that a sleeve of one printed line at least goes between."""
+        return self.wall_mm >= self.shop.print_settings.line_width_mm - 1e-9
 
     @property
     def arms(self) -> tuple[Arm, ...]:
@@ -80,13 +87,13 @@ class Joiner:
     @property
     def parts(self) -> tuple[Part, ...]:
         """The wire, and its sleeves where the bore is much wider."""
-        if self.wall_mm < self.shop.print_settings.wall_mm:
+        if not self.sleeved:
             return self.wires
         return (*self.wires, *(s for arm in self.arms for s in self._sleeves(arm)))
 
     def _sleeves(self, arm: Arm) -> Iterable[Part]:
         """Printed rings along an arm, starboard and port: equal solids."""
-        slip = self.shop.slip_mm
+        slip = SLEEVE_PLAY_MM
         shape = Rod(self.radius_mm + slip + self.wall_mm, arm.length_mm, self.radius_mm + slip)
         first = f"{arm.id}R"
         form = Printed(shape, self.shop.print_settings, (1.0, 0.0, 0.0), first)
@@ -133,11 +140,11 @@ class Joiner:
             for side, k in (("R", 0), ("L", -1)):
                 joiner, tube = self.wires[k].id, arm.run.parts[k].id
                 way = vector(arm.way * (1, -1 if k else 1, 1))
-                if self.wall_mm < self.shop.print_settings.wall_mm:
+                if not self.sleeved:
                     found.append(Joint("joiner in tube", joiner, tube, (0.0, PACKED_MM), way))
                     continue
                 sleeve = f"{arm.id}{side}"
-                band = (0.0, self.shop.slip_mm + GLUE_GAP_MM)
+                band = (0.0, SLEEVE_PLAY_MM + GLUE_GAP_MM)
                 found += [Joint("sleeve in tube", sleeve, tube, band, way),
                           Joint("joiner in sleeve", joiner, sleeve, band, way)]
         return tuple(found)

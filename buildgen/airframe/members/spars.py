@@ -60,7 +60,9 @@ class SparRun:
         up = self.run[0].up
         if self.round:
             return Bar(self.a, self.b, AFT, up, radius_mm=(self.spar.outer_mm or 0.0) / 2)
-        return Bar(self.a, self.b, AFT, up, self._section)
+        along = (self.b - self.a) / np.linalg.norm(self.b - self.a)
+        side = np.cross(along, up) / np.linalg.norm(np.cross(along, up))
+        return Bar(self.a, self.b, side, np.cross(side, along), self._section)
 
     @property
     def _section(self) -> Array:
