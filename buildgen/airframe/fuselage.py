@@ -39,10 +39,10 @@ FORMER_WEB_MM = 7.0
 CORNER_MM = 4.0
 GLUE_GAP_MM = 0.15
 """A gap that glue still fills; common practice, no source."""
-FOLD_MM = 0.05
-"""What a fold of the side within a hole shifts one half of it."""
 SADDLE_PLAY_MM = 0.3
 """Between the wing and its saddle: covering on both; common practice, no source."""
+SADDLE_STEP_MM = 1.5
+"""The wing is looked at this often across the body: with dihedral its thin tail moves up."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -99,9 +99,10 @@ class Body:
         """What the wing and the way it is lifted off take from the body."""
         panel = self.wing.panels[0]
         half = max(s.width_mm for s in self.stations) / 2 + 2
+        reach = min(half, panel.length_mm)
         outlines = [
             Polygon(ring[:, [0, 2]])
-            for y in (0.0, min(half, panel.length_mm))
+            for y in np.linspace(0.0, reach, 2 + int(reach / SADDLE_STEP_MM))
             if (ring := panel.ring(Pose(np.array([[1, 0, 0], [0, 0, -1], [0, 1.0, 0]]),
                                         np.array([0.0, y, 0.0])))) is not None
         ]
@@ -175,8 +176,8 @@ class Body:
         xs = np.array([s.x_mm for s in self.stations])
         half = np.array([s.width_mm / 2 for s in self.stations])
         bend = self._bend(np.column_stack([xs, -half]))
-        top = [s.top_mm - self._deck_depth(s.x_mm, True) for s in self.stations]
-        bottom = [s.bottom_mm + self._deck_depth(s.x_mm, False) for s in self.stations]
+        top = [s.top_mm - self._side_edge(s.x_mm, True) for s in self.stations]
+        bottom = [s.bottom_mm + self._side_edge(s.x_mm, False) for s in self.stations]
         ring = [*zip(bend.flat_mm, bottom, strict=True),
                 *list(zip(bend.flat_mm, top, strict=True))[::-1]]
         pose = Pose.at((0, 0, 0), (1, 0, 0), (0, 0, 1))
@@ -265,6 +266,16 @@ class Body:
         levels = [s.top_mm if upper else s.bottom_mm for s in self.stations]
         return self.deck_mm * float(np.hypot(1, self._steepest(x, levels)))
 
+    def _side_edge(self, x: float, upper: bool) -> float:
+        """How far a side's edge stays from the outside of a deck.
+
+        The edge is cut square to the side; where that stands oblique in plan and the deck slopes,
+        its inner corner would reach into the deck.
+        """
+        levels = [s.top_mm if upper else s.bottom_mm for s in self.stations]
+        oblique = self._steepest(x, [s.width_mm / 2 for s in self.stations])
+        return self._deck_depth(x, upper) + self.side_mm * oblique * self._steepest(x, levels)
+
     def _steepest(self, x: float, values: list[float]) -> float:
         """Greatest slope of the legs that meet near x."""
         xs = [s.x_mm for s in self.stations]
@@ -314,12 +325,17 @@ class Body:
                       for d in decks for s in kinds["FS"] if _overlap(d, s)]
             found += [Joint("face to face", d.id, f.id, self._former_band(f), way)
                       for d in decks for f in formers if _overlap(d, f)]
-        band = (0.0, self.shop.slip_mm + GLUE_GAP_MM + FOLD_MM)
-        found += [Joint("dowel in hole", d.id, s.id, band, across)
+        found += [Joint("dowel in hole", d.id, s.id, self._dowel_band(d), across)
                   for d in kinds["D"] for s in kinds["FS"] if _overlap(d, s)]
         if self.firewall is not None:
             found.append(Joint("face to face", "M1", formers[0].id, (0.0, 0.05), (1.0, 0.0, 0.0)))
         return tuple(found)
+
+    def _dowel_band(self, dowel: Part) -> tuple[float, float]:
+        """Its hole, square through a side that stands oblique, is wider by what it wanders."""
+        x = float(dowel.centroid_mm[0])
+        oblique = self._steepest(x, [s.width_mm / 2 for s in self.stations])
+        return 0.0, self.shop.slip_mm + self.side_mm * oblique + GLUE_GAP_MM
 
     def _former_band(self, former: Part) -> tuple[float, float]:
         """A former cut square to the smaller of its faces gapes at the larger one."""

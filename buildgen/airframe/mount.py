@@ -198,9 +198,11 @@ class MountShape:
             middle = (len(points) - 1) // 2
             keep = points[:, 0] <= self.mount.wrap_mm + 12.0
             first, last = int(np.argmax(keep)), len(keep) - 1 - int(np.argmax(keep[::-1]))
-            span = min(middle - first, last - middle)
+            span = max(middle - first, last - middle)
             rings.append((points, middle, span))
-        span = min(r[2] for r in rings)
+        # The longest of all: on a swept wing the nose lies further ahead on one side, and a
+        # shorter pocket would close behind it and not slide on.
+        span = min(max(r[2] for r in rings), *(m for _, m, _ in rings))
         made = []
         for points, middle, _ in rings:
             part = _grown(points[middle - span : middle + span + 1], NOSE_PLAY_MM)
