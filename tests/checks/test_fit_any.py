@@ -96,7 +96,7 @@ def text_of(given_: dict[str, object]) -> str:
     return TEXT.format(**{k: v for k, v in given_.items() if k not in ("panel", "up")}, more=more)
 
 
-@settings(max_examples=12, deadline=None, derandomize=True, database=None,
+@settings(max_examples=12,
           suppress_health_check=[HealthCheck.too_slow, HealthCheck.filter_too_much])
 @given(DEFINITIONS)
 def test_a_valid_definition_gives_a_kit_that_fits(given_: dict[str, object]) -> None:

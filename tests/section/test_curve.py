@@ -81,7 +81,7 @@ def test_the_ends_of_a_blend() -> None:
 
 
 @settings(max_examples=20, deadline=None)
-@given(names, st.floats(0, 0.02))
+@given(names, st.floats(0, 0.02).map(lambda gap: round(gap, 6)))
 def test_a_trailing_edge_is_at_least_so_thick(name: str, gap: float) -> None:
     section = find(name)
     opened = section.with_trailing_edge(gap)
