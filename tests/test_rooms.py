@@ -11,7 +11,7 @@ import buildgen
 
 PACKAGE = Path(buildgen.__file__).parent
 ROOMS = (
-    "problems", "shelf", "section", "aero", "solid", "part", "design", "airframe", "sheets",
+    "problems", "shelf", "section", "aero", "solid", "form", "part", "design", "airframe", "sheets",
     "prints", "checks", "packet", "pack", "build", "terminal", "cli", "__init__", "__main__",
 )
 # pack is imported by build when something is written: build.py shows the whole job.

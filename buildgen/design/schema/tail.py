@@ -1,0 +1,51 @@
+"""Tailplane and fin."""
+
+from __future__ import annotations
+
+from typing import Annotated
+
+from pydantic import Field, Strict, model_validator
+
+from buildgen.design.schema.types import Angle, Length, Number, Table
+
+
+class Surface(Table):
+    """A tail surface cut from sheet: given by its measures, or sized by its volume."""
+
+    span_mm: Length | None = Field(None, description="Whole span; of a fin its height.")
+    root_chord_mm: Length | None = None
+    tip_chord_mm: Length | None = None
+    sweep_mm: Number = 0.0
+    volume: Annotated[float, Strict(), Field(gt=0, le=2)] | None = Field(
+        None, description="Tail volume coefficient, instead of the measures."
+    )
+    aspect: Annotated[float, Strict(), Field(gt=0, le=12)] | None = Field(
+        None, description="Aspect ratio where the volume is given."
+    )
+    taper: Annotated[float, Strict(), Field(gt=0.1, le=1)] = 0.8
+    control: Annotated[float, Strict(), Field(ge=0, le=0.6)] = Field(
+        0.3, description="Elevator's or rudder's share of the chord."
+    )
+    incidence_deg: Angle = 0.0
+    lightening: bool = False
+    hinges: Annotated[int, Strict(), Field(ge=2, le=12)] = 3
+
+    @model_validator(mode="after")
+    def _measures_or_volume(self) -> Surface:
+        measures = (self.span_mm, self.root_chord_mm)
+        if self.volume is None and None in measures:
+            raise ValueError("give span_mm and root_chord_mm, or volume")
+        if self.volume is not None and measures != (None, None):
+            raise ValueError("give either volume or span_mm and root_chord_mm, not both")
+        return self
+
+
+class Tail(Table):
+    """Tailplane on top of the fuselage and fin on the tailplane, from sheet."""
+
+    arm_mm: Length = Field(description="Wing's quarter chord to the tailplane's.")
+    material: str = "balsa-light"
+    thickness_mm: Length = 4.0
+    tailplane: Surface
+    fin: Surface
+    covering: str | None = "film"

@@ -1,0 +1,105 @@
+"""The wing: panels, ribs and what runs through them."""
+
+from __future__ import annotations
+
+from typing import Annotated, Literal
+
+from pydantic import Field
+
+from buildgen.design.schema.types import Angle, Count, Extent, Fraction, Length, Number, Table
+
+
+class Panel(Table):
+    """One panel of the wing, from the root out; the other side is its mirror image."""
+
+    span_mm: Length = Field(description="Along the panel, from its inner to its outer end.")
+    root_chord_mm: Length | None = Field(None, description="Inner chord; the last tip chord.")
+    tip_chord_mm: Length | None = Field(None, description="Outer chord; the root chord.")
+    sweep_mm: Number = Field(0.0, description="How far the tip's leading edge lies aft.")
+    dihedral_deg: Angle = Field(0.0, description="Rise of this panel above the level.")
+    twist_deg: Angle | None = Field(None, description="At the tip, nose up positive; as inboard.")
+    section: str | None = Field(None, description="At the panel's tip; the wing's section.")
+    rib_spacing_mm: Length | None = Field(None, description="Greatest distance of ribs.")
+    rib_count: Count | None = Field(None, description="Bays of equal width instead of a spacing.")
+
+
+class Spar(Table):
+    """A spar, straight in space between the wing's dihedral breaks."""
+
+    kind: Literal["tube", "rod", "strip"] = Field("tube", description="Round, or square stick.")
+    material: str = "carbon-tube"
+    outer_mm: Length | None = Field(None, description="Outside diameter of a tube or rod.")
+    inner_mm: Extent = Field(0.0, description="Bore of a tube.")
+    width_mm: Length | None = Field(None, description="Of a strip, along the chord.")
+    height_mm: Length | None = Field(None, description="Of a strip, across the chord.")
+    at_chord: Fraction = Field(0.30, description="Place at the root, fraction of the chord.")
+    at_tip_chord: Fraction | None = Field(None, description="Place at the tip; as at the root.")
+    place: Literal["middle", "top", "bottom"] = Field("middle", description="Height in the rib.")
+    from_mm: Extent = Field(0.0, description="Inner end, along the span from the centre line.")
+    to_mm: Length | None = Field(None, description="Outer end; the tip.")
+    joiner_mm: Extent = Field(
+        80.0, description="Length each way of the bent joiner in a tube's bore at a break."
+    )
+    joiner_material: str = "music-wire"
+
+
+class LeadingEdge(Table):
+    """The stick along the nose."""
+
+    kind: Literal["square", "round", "none"] = Field(
+        "square", description="A square stick stands on its edge and is sanded to the section."
+    )
+    size_mm: Length = 6.0
+    material: str = "balsa"
+
+
+class TrailingEdge(Table):
+    """Tapered stock behind the ribs."""
+
+    kind: Literal["stock", "none"] = "stock"
+    width_mm: Length = 20.0
+    material: str = "balsa"
+
+
+class WiringHole(Table):
+    """A hole in every rib for the harness; large enough for the plug."""
+
+    diameter_mm: Length = 12.0
+    at_chord: Fraction = 0.15
+
+
+class Lightening(Table):
+    """Round holes that take weight out of the ribs."""
+
+    use: bool = True
+    min_web_mm: Length | None = Field(None, description="Least wood left; from the material.")
+    min_diameter_mm: Length = 8.0
+
+
+class Ribs(Table):
+    """The ribs' wood and how they are trimmed."""
+
+    material: str = "balsa"
+    thickness_mm: Length = 2.0
+    root_material: str | None = Field(None, description="Ribs at the root and at breaks.")
+    root_thickness_mm: Length | None = None
+    edges: Literal["smaller", "larger"] = Field(
+        "smaller", description="A tapered rib is cut to its smaller or its larger face."
+    )
+    lightening: Lightening = Lightening()
+
+
+class Wing(Table):
+    """The wing: its root's leading edge is the origin of the aircraft."""
+
+    section: str = "clarky"
+    incidence_deg: Angle = 0.0
+    min_trailing_edge_mm: Extent = 1.0
+    rib_spacing_mm: Length = 60.0
+    ribs: Ribs = Ribs()
+    panel: Annotated[tuple[Panel, ...], Field(strict=False, min_length=1)]
+    spar: Annotated[tuple[Spar, ...], Field(strict=False)] = ()
+    leading_edge: LeadingEdge = LeadingEdge()
+    trailing_edge: TrailingEdge = TrailingEdge()
+    wiring_hole: WiringHole | None = None
+    covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
