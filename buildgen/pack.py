@@ -7,7 +7,7 @@ from typing import TYPE_CHECKING, Any
 
 from buildgen.packet.package import Package
 from buildgen.packet.write import write_manifest, write_packet
-from buildgen.prints.files import start
+from buildgen.prints.files import start, start_all
 from buildgen.prints.model import write_glb
 from buildgen.problems import DesignError, Problem
 from buildgen.sheets.drawing import draw
@@ -29,10 +29,10 @@ def write_all(build: Build, room: Path) -> None:
     """The whole packet: solids in a process of their own beside the flat work."""
     (room / "prints").mkdir()
     build.say("printing parts: solids")
-    job = start(build.of("print"), room / "prints")
+    (room / "model").mkdir()
+    job = start_all(build, room / "prints", room / "model" / "airframe.step")
     try:
         write_sheets(build, room)
-        (room / "model").mkdir()
         write_glb(build, room / "model" / "airframe.glb")
         reports = _sound(job.finish())
     except BaseException:

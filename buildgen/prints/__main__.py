@@ -4,17 +4,21 @@ import pickle
 import sys
 from pathlib import Path
 
+from buildgen.prints.assembly import assembly_text
 from buildgen.prints.brep import KernelMissing
 from buildgen.prints.make import make
 
 
 def main(room: Path, folder: Path) -> None:
     """Build every job of the room into the folder; leave the reports, or what went wrong."""
-    jobs = pickle.loads((room / "jobs").read_bytes())
+    work = pickle.loads((room / "jobs").read_bytes())
     built: dict[int, object] = {}
     result: object
     try:
-        result = [make(job, folder, built) for job in jobs]
+        result = [make(job, folder, built) for job in work.jobs]
+        if work.assembly is not None:
+            text = assembly_text(work.name, work.pieces, built)
+            Path(work.assembly).write_text(text, "utf-8", newline="\n")
     except (KernelMissing, ValueError) as error:
         result = error
     (room / "result").write_bytes(pickle.dumps(result))

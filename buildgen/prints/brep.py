@@ -27,6 +27,8 @@ from buildgen.solid import (
 SPLINE_MM = 0.005
 """Curves are approximated this closely: a tenth of what a printer can show."""
 
+SEW_MM = 1e-5
+
 
 class KernelMissing(Exception):
     """The CAD kernel cannot be loaded; the message says what to install."""
@@ -151,7 +153,31 @@ def _(shape: Common) -> Any:
 
 @brep.register
 def _(shape: Surface) -> Any:
-    raise ValueError("a triangulated surface has no boundary representation")
+    return sewn(shape)
+
+
+def sewn(surface: Surface) -> Any:
+    """A triangulated solid with flat faces, coplanar neighbours as one face.
+
+    Raises:
+        ValueError: its triangles do not close.
+    """
+    from OCP.BRepBuilderAPI import BRepBuilderAPI_Sewing
+    from OCP.ShapeUpgrade import ShapeUpgrade_UnifySameDomain
+
+    cq = kernel()
+    corners = [cq.Vector(*(float(v) for v in p)) for p in surface.vertices]
+    sewing = BRepBuilderAPI_Sewing(SEW_MM)
+    for a, b, c in surface.faces:
+        wire = cq.Wire.makePolygon([corners[a], corners[b], corners[c]], close=True)
+        sewing.Add(cq.Face.makeFromWires(wire).wrapped)
+    sewing.Perform()
+    shells = cq.Shape.cast(sewing.SewedShape()).Shells()
+    if len(shells) != 1 or not shells[0].wrapped.Closed():
+        raise ValueError("the triangles of a surface do not close to one solid")
+    joined = ShapeUpgrade_UnifySameDomain(cq.Solid.makeSolid(shells[0]).wrapped, True, True, False)
+    joined.Build()
+    return cq.Shape.cast(joined.Shape()).Solids()[0]
 
 
 def _polygon(points: Array) -> Any:

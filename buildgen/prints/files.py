@@ -6,14 +6,28 @@ import pickle
 import subprocess
 import sys
 import tempfile
-from collections.abc import Iterable
+from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
 
-from buildgen.part import Part, Printed
+from buildgen.part import Kit, Part, Printed
+from buildgen.prints.assembly import Piece, pieces_of
 from buildgen.prints.brep import KernelMissing
 from buildgen.prints.make import Job, Report
 from buildgen.problems import DesignError, Problem
+
+
+@dataclass(frozen=True, eq=False)
+class Work:
+    """What the solids' process is to make: prints, and the whole aircraft where it is wanted.
+
+    Both in one pickle: a recipe that serves a print and the aircraft is built once.
+    """
+
+    jobs: Sequence[Job]
+    name: str = ""
+    pieces: Sequence[Piece] = ()
+    assembly: str | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -69,10 +83,19 @@ def jobs_of(parts: Iterable[Part]) -> list[Job]:
 def start(parts: Iterable[Part], folder: Path) -> Running:
     """Begin to build every distinct printed solid into `folder`: STEP, STL and 3MF."""
     jobs = jobs_of(parts)
-    if not jobs:
-        return Running(None, None)
+    return _begin(Work(jobs), folder) if jobs else Running(None, None)
+
+
+def start_all(kit: Kit, folder: Path, assembly: Path) -> Running:
+    """Begin to build the prints into `folder` and the whole aircraft into the STEP file."""
+    work = Work(jobs_of(kit.of("print")), kit.title.name, pieces_of(kit.parts),
+                str(assembly.resolve()))
+    return _begin(work, folder)
+
+
+def _begin(work: Work, folder: Path) -> Running:
     room = tempfile.TemporaryDirectory(prefix="buildgen-")
-    (Path(room.name) / "jobs").write_bytes(pickle.dumps(jobs))
+    (Path(room.name) / "jobs").write_bytes(pickle.dumps(work))
     process = subprocess.Popen(
         [sys.executable, "-m", "buildgen.prints", room.name, str(folder.resolve())],
         stdout=subprocess.DEVNULL, stderr=subprocess.PIPE,

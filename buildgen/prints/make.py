@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import itertools
 import re
 from dataclasses import dataclass, field
 from pathlib import Path
@@ -73,7 +74,7 @@ def make(job: Job, folder: Path, built: dict[int, Any]) -> Report:
     solid = built[key]
     if isinstance(job.shape, Mirrored):
         solid = solid.mirror(("YZ", "XZ", "XY")[job.shape.axis])
-    solid = _placed(solid, recipe.pose)
+    solid = placed(solid, recipe.pose)
     vertices, faces = welded(solid)
     report = _report(job, recipe, solid, vertices, faces)
     names = tuple(f"{job.key}{e}" for e in (".step", ".stl", ".3mf"))
@@ -83,7 +84,8 @@ def make(job: Job, folder: Path, built: dict[int, Any]) -> Report:
     return Report(**{**report.__dict__, "files": names})
 
 
-def _placed(solid: Any, pose: Pose) -> Any:
+def placed(solid: Any, pose: Pose) -> Any:
+    """A solid moved into a frame."""
     import cadquery as cq
 
     plane = cq.Plane(tuple(map(float, pose.origin)), tuple(map(float, pose.rotation[:, 0])),
@@ -135,16 +137,21 @@ def _report(
 
 
 def step_text(solid: Any, name: str) -> str:
-    """The STEP file of a solid, the same text each time.
-
-    The writer's clock and its counter of products are replaced by fixed words.
-    """
+    """The STEP file of a solid, the same text each time."""
     import tempfile
 
     with tempfile.TemporaryDirectory() as room:
         path = Path(room) / "part.step"
         solid.exportStep(str(path), write_pcurves=False)
         text = path.read_text("utf-8")
+    return fixed_header(text, name)
+
+
+def fixed_header(text: str, name: str) -> str:
+    """A STEP file without the writer's clock and its counters of products and of their uses."""
+    count = itertools.count(1)
+    text = re.sub(r"NEXT_ASSEMBLY_USAGE_OCCURRENCE\('\d+'",
+                  lambda _: f"NEXT_ASSEMBLY_USAGE_OCCURRENCE('{next(count)}'", text)
     text = re.sub(r"FILE_NAME\(.*?\);", f"FILE_NAME('{name}','1980-01-01T00:00:00',(''),(''),"
                   "'buildgen','buildgen','');", text, count=1, flags=re.DOTALL)
     return re.sub(r"'Open CASCADE STEP translator [^']*'", f"'{name}'", text)
