@@ -9,6 +9,7 @@ from pathlib import Path
 from buildgen.airframe.covering import glue, plate_covers, wing_covers
 from buildgen.airframe.equipment import Movable, make_equipment
 from buildgen.airframe.fuselage import Body
+from buildgen.airframe.hinge import Horn
 from buildgen.airframe.members import make_members
 from buildgen.airframe.power import Drive
 from buildgen.airframe.ribs import make_ribs
@@ -38,6 +39,11 @@ class Airframe:
         level = self.body.middle if self.body else (lambda x: 0.0)
         parts, movable = make_equipment(self.shop, level)
         return tuple(parts), tuple(movable)
+
+    @property
+    def horns(self) -> tuple[Horn, ...]:
+        """Where pushrods take hold: every surface that moves has one."""
+        return self.tail.horns if self.tail else ()
 
     @property
     def movable(self) -> tuple[Movable, ...]:

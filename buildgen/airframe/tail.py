@@ -12,6 +12,8 @@ from buildgen.aero.planform import Panel as PlanPanel
 from buildgen.aero.planform import area_mm2, mean_aerodynamic_chord
 from buildgen.airframe.blank import Blank, apply, lightening, solid_cut
 from buildgen.airframe.fuselage import Body
+from buildgen.airframe.hinge import GAP_MM as HINGE_GAP_MM
+from buildgen.airframe.hinge import LEAF_G, HingeLine, Horn, bought_horn, horn_at
 from buildgen.airframe.seat import Seat
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
@@ -20,10 +22,9 @@ from buildgen.part import Bought, Joint, Part
 from buildgen.solid import Array, Circle, Placed, Pose, Prism
 
 STEP = "Tail"
-HINGE_GAP_MM = 0.5
-HINGE_G = 0.3
-"""A fibre hinge of 18 x 12 mm; common practice, no source."""
-HORN_G = 1.0
+HORN_RADIUS_MM = 14.0
+THROW_DEG = (25.0, 25.0)
+"""Either way; common practice, no source."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -167,22 +168,44 @@ class SheetTail:
         ]
         return (*parts, *self._hardware())
 
+    @cached_property
+    def lines(self) -> tuple[HingeLine, HingeLine]:
+        """Hinge lines of the elevator, port to starboard, and of the rudder, from the top down."""
+        half = self.thick_mm / 2
+        plane, fin, x, y, z = self.tailplane, self.fin, *np.eye(3)
+        level, upright = self.flat, self.upright
+        return (
+            HingeLine(level((plane.hinge_mm, -plane.span_mm, half)),
+                      level((plane.hinge_mm, plane.span_mm, half)), x, z),
+            HingeLine(upright((fin.hinge_mm, fin.span_mm, half)),
+                      upright((fin.hinge_mm, 0.0, half)), x, y),
+        )
+
+    @cached_property
+    def horns(self) -> tuple[Horn, ...]:
+        """Below the elevator beside the fuselage, and low on the rudder's starboard side."""
+        elevator, rudder = self.lines
+        wide = self.body.width(float(elevator.start[0])) / 2 if self.body else 0.0
+        return (
+            horn_at(elevator, self.tailplane.span_mm + wide + 8.0, HORN_RADIUS_MM, "down",
+                    THROW_DEG, "HEH", "T2", "elevator", "tail.tailplane"),
+            horn_at(rudder, self.fin.span_mm - 15.0, HORN_RADIUS_MM, "up",
+                    THROW_DEG, "HRH", "V2", "rudder", "tail.fin"),
+        )
+
     def _hardware(self) -> list[Part]:
         parts = []
-        for id, name, surface, outline, pose, key in (
-            ("HE", "elevator", self.given.tailplane, self.tailplane, self.flat, "tail.tailplane"),
-            ("HR", "rudder", self.given.fin, self.fin, self.upright, "tail.fin"),
+        for id, name, surface, line, horn in (
+            ("HE", "elevator", self.given.tailplane, self.lines[0], self.horns[0]),
+            ("HR", "rudder", self.given.fin, self.lines[1], self.horns[1]),
         ):
-            y = 0.0 if name == "elevator" else outline.span_mm / 2
-            at = Pose(origin=pose((outline.hinge_mm, y, self.thick_mm / 2)))
-            mass = surface.hinges * HINGE_G
+            at = Pose(origin=(line.start + line.end) / 2)
+            mass = surface.hinges * LEAF_G
             parts += [
                 Part(id, f"hinges of the {name}", "hinges",
                      Bought(mass, 0.2 * mass, None, "fibre hinge, 18 x 12 mm", surface.hinges),
-                     at, STEP, f"{key}.hinges"),
-                Part(f"{id}H", f"horn of the {name}", "horn",
-                     Bought(HORN_G, 0.3, None, "control horn with backing plate", 1),
-                     at, STEP, key),
+                     at, STEP, f"{horn.key}.hinges"),
+                bought_horn(horn, f"horn of the {name}", STEP),
             ]
         return parts
 
