@@ -1,0 +1,94 @@
+"""Rib stations: where ribs stand along the span, of what, and what for."""
+
+from __future__ import annotations
+
+from dataclasses import dataclass
+
+import numpy as np
+
+from buildgen.airframe.bays import Bay
+from buildgen.airframe.shop import Shop
+from buildgen.airframe.surface import Panel, WingShape
+from buildgen.solid import Array
+
+
+@dataclass(frozen=True, eq=False)
+class Place:
+    """Where a rib stands: its outer face along a panel, its plane, what it is for."""
+
+    panel: Panel
+    face_mm: float
+    normal: Array
+    material: str
+    thickness_mm: float
+    why: str
+    bay: Bay | None = None
+    single: bool = False
+    """On the centre line, shared by both halves."""
+    against_inner: bool = False
+    """Its inner face lies on the plane in which the panel begins."""
+
+
+def places(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> list[Place]:
+    """Every rib of the starboard half from the root out."""
+    found: list[Place] = []
+    for panel in wing.panels:
+        found += _panel_places(shop, wing, panel, [b for b in bays if b.panel is panel])
+    return found
+
+
+def _panel_places(shop: Shop, wing: WingShape, panel: Panel, bays: list[Bay]) -> list[Place]:
+    ribs = shop.definition.wing.ribs
+    plain = shop.thickness(ribs.material, ribs.thickness_mm)
+    end_wood = ribs.root_material or ribs.material
+    end = shop.thickness(end_wood, ribs.root_thickness_mm or ribs.thickness_mm)
+    found: list[Place] = []
+    centre = panel.index == 0 and wing.flat_centre
+    break_in = panel.index > 0 and _breaks(wing, panel.index - 1)
+    if centre:
+        found.append(Place(panel, end / 2, panel.along, end_wood, end, "centre rib", single=True))
+    elif panel.index == 0 or break_in:
+        found.append(Place(panel, end, panel.inner_normal, end_wood, end,
+                           "root rib" if panel.index == 0 else "rib at the break",
+                           against_inner=True))
+    for bay in bays:
+        power = shop.definition.power
+        assert power is not None
+        for face, side in ((bay.s_mm - bay.half_mm, "inboard"), (bay.outer_face_mm, "outboard")):
+            found.append(Place(panel, face, panel.along, power.mount.rib_material, bay.rib_mm,
+                               f"mount rib, motor {bay.index} {side}", bay))
+    last = panel.index == len(wing.panels) - 1
+    at_break = not last and _breaks(wing, panel.index)
+    wood, thick = (end_wood, end) if at_break else (ribs.material, plain)
+    why = "tip rib" if last else ("rib at the break" if at_break else "rib between panels")
+    found.append(Place(panel, panel.length_mm, panel.outer_normal, wood, thick, why))
+    found.sort(key=lambda p: p.face_mm)
+    return _filled(shop, panel, found, bays, plain)
+
+
+def _breaks(wing: WingShape, index: int) -> bool:
+    a, b = wing.panels[index], wing.panels[index + 1]
+    return abs(a.dihedral_deg - b.dihedral_deg) > 1e-9
+
+
+def _filled(
+    shop: Shop, panel: Panel, fixed: list[Place], bays: list[Bay], plain: float
+) -> list[Place]:
+    """Plain ribs between the fixed ones, at most the wanted spacing apart."""
+    given = shop.definition.wing.panel[panel.index]
+    spacing = given.rib_spacing_mm or shop.definition.wing.rib_spacing_mm
+    if given.rib_count:
+        spacing = panel.length_mm / given.rib_count
+    marks = [p.face_mm - p.thickness_mm / 2 for p in fixed]
+    if marks[0] > spacing / 2:
+        marks.insert(0, 0.0)
+    found = list(fixed)
+    for low, high in zip(marks, marks[1:], strict=False):
+        if any(abs((low + high) / 2 - b.s_mm) < 1.0 for b in bays):
+            continue
+        gaps = max(1, int(np.ceil((high - low) / spacing - 0.05)))
+        for k in range(1, gaps):
+            face = low + k * (high - low) / gaps + plain / 2
+            wood = shop.definition.wing.ribs.material
+            found.append(Place(panel, face, panel.along, wood, plain, "rib"))
+    return sorted(found, key=lambda p: p.face_mm)
