@@ -52,6 +52,16 @@ class Bend:
 
 
 @dataclass(frozen=True, eq=False)
+class Formed:
+    """A plate bent over a surface: its solid as it stands, in the plate's frame.
+
+    The plate's outline is the sheet laid flat; its mass is that of the sheet as cut.
+    """
+
+    shape: Shape
+
+
+@dataclass(frozen=True, eq=False)
 class Plate:
     """Cut from sheet: nominal outline in local x, y; z from 0 to thickness."""
 
@@ -61,7 +71,7 @@ class Plate:
     grain_deg: float | None = None
     marks: tuple[Mark, ...] = ()
     may_turn_over: bool = True
-    bend: Bend | None = None
+    bend: Bend | Formed | None = None
 
     process: Process = field(default="cut", init=False)
 
@@ -80,6 +90,8 @@ class Plate:
         """The solid as it stands in its frame."""
         if self.bend is None:
             return Prism(self.outline, self.thickness_mm, self.circles)
+        if isinstance(self.bend, Formed):
+            return self.bend.shape
         return bent(self.shape2d, self.thickness_mm, self.bend)
 
 

@@ -19,6 +19,7 @@ from buildgen.form import (
     Bought,
     Cover,
     Form,
+    Formed,
     Mark,
     Plate,
     Printed,
@@ -204,8 +205,12 @@ def _bent_other_way(plate: Plate, new_id: str, old_id: str) -> Plate:
                 line=tuple((x, -y) for x, y in m.line))
         for m in plate.marks
     )
+    bend = plate.bend
+    if isinstance(bend, Formed):
+        bend = Formed(Mirrored(bend.shape, 1))
     return replace(
         plate,
+        bend=bend,
         outline=scale(plate.outline, 1, -1, origin=(0, 0)),
         circles=tuple((x, -y, r) for x, y, r in plate.circles),
         marks=marks,
@@ -224,6 +229,8 @@ class Joint:
         inner, outer: part ids; the inner one enters the outer one.
         gap_mm: least and greatest clearance all round; (0, 0) where faces touch.
         way: direction along which the inner part goes in, or None where it is laid on.
+        facing: direction from the inner part's glued face to the outer one's, where that is not
+            the way in.
     """
 
     kind: str
@@ -231,6 +238,7 @@ class Joint:
     outer: str
     gap_mm: tuple[float, float] = (0.0, 0.5)
     way: tuple[float, float, float] | None = None
+    facing: tuple[float, float, float] | None = None
 
 
 @dataclass(frozen=True, eq=False)
@@ -285,6 +293,6 @@ class Kit:
         return tuple(dict.fromkeys(p.step for p in self.parts))
 
 __all__ = [
-    "G_PER_MM3", "Allowance", "Bend", "Bought", "Cover", "Form", "Joint", "Kit", "Mark", "Part",
-    "Plate", "PrintSettings", "Printed", "Process", "Stick", "Title",
+    "G_PER_MM3", "Allowance", "Bend", "Bought", "Cover", "Form", "Formed", "Joint", "Kit", "Mark",
+    "Part", "Plate", "PrintSettings", "Printed", "Process", "Stick", "Title",
 ]

@@ -19,10 +19,11 @@ from shapely.geometry import MultiPolygon, Polygon, box
 
 from buildgen.airframe.blank import parts_of
 from buildgen.checks.fit_space import Solid, box_of, cropped, point, shared
-from buildgen.part import Bend, Joint, Plate
+from buildgen.part import Bend, Formed, Joint, Plate
 from buildgen.solid import Array, Pose, polygons
 
-LAID = ("face to face", "stick in notch")
+ON_EDGE = ("stick in notch", "sheet on rib")
+LAID = ("face to face", "edge to edge", *ON_EDGE)
 """Kinds that glue holds face to face, and kinds that are measured all round: the share of the
 inner part's outline that must lie within the band (a notch holds the floor and most of both
 sides, a hinge line one edge)."""
@@ -208,7 +209,7 @@ def _contact(joint: Joint, inner: Solid, outer: Solid) -> Measured:
     parallel = _parallel(inner, outer, reach) if joint.way is None else None
     if parallel is not None:
         return Measured(joint, None, *parallel, point(_middle(inner.solid, outer.solid)))
-    if joint.kind == "stick in notch" and outer.slab is not None:
+    if joint.kind in ON_EDGE and outer.slab is not None:
         return _on_edge(joint, inner, outer, reach)
     best, facing = 0.0, 0.0
     low = np.maximum(inner.box[0], outer.box[0]) - reach - FACING_MM
@@ -267,12 +268,15 @@ def _closed(inner: Manifold, outer: Manifold, shift: Array, way: Array) -> float
 
 
 def _normals(joint: Joint, inner: Solid, outer: Solid) -> list[Array]:
-    """Ways in which one may lie on the other: the way in, or the faces of the outer plate."""
-    found = [] if joint.way is None else [np.array(joint.way)]
+    """Ways in which one may lie on the other: the way in, the facing, or the faces of the outer plate."""
+    pushed = joint.way if joint.way is not None else joint.facing
+    found = [] if pushed is None else [np.array(pushed)]
     form = outer.part.form
     if not isinstance(form, Plate) or (found and form.bend is None):
         return found
     normals = [np.array([0.0, 0.0, 1.0])]
+    if isinstance(form.bend, Formed):
+        return found
     if form.bend is not None:
         normals = _leg_normals(form.bend, *_range_x(inner, outer))
     return found + [sign * (outer.part.pose.rotation @ n) for n in normals for sign in (-1, 1)]

@@ -22,7 +22,18 @@ from shapely.geometry import Polygon
 from buildgen.airframe.blank import parts_of
 from buildgen.checks.fit_space import CLASH_MM3, Clash, Solid, box_of, cropped, point, shared
 from buildgen.part import Joint, Kit, Plate, Printed, Stick
-from buildgen.solid import Array, Mirrored, Placed, Prism, Rod, Shape, Union, mesh
+from buildgen.solid import (
+    Array,
+    Common,
+    Difference,
+    Mirrored,
+    Placed,
+    Prism,
+    Rod,
+    Shape,
+    Union,
+    mesh,
+)
 
 BEYOND_MM = 1.0
 STEPS_MM = (0.5, 1.0, 2.0, 3.0, 4.0, 6.0, 8.0)
@@ -160,9 +171,23 @@ def _swept(thing: Solid, out: Array, length: float) -> Iterator[Manifold]:
 def _in_one(thing: Solid, out: Array) -> bool:
     """What it sweeps is known in one solid: bars, and flat plates carried in their plane."""
     form = thing.part.form
-    if isinstance(form, Stick) or (isinstance(form, Printed) and isinstance(form.shape, Rod)):
+    if isinstance(form, Stick) and not _hollowed(form.shape):
+        return True
+    if isinstance(form, Printed) and isinstance(form.shape, Rod):
         return True
     return thing.slab is not None and abs(float(thing.slab[0].rotation[:, 2] @ out)) < IN_PLANE
+
+
+def _hollowed(shape: Shape) -> bool:
+    """Something is taken from it, so that it is not the hull of its corners."""
+    match shape:
+        case Difference():
+            return True
+        case Placed() | Mirrored():
+            return _hollowed(shape.shape)
+        case Union() | Common():
+            return any(_hollowed(s) for s in shape.shapes)
+    return False
 
 
 def _bars(shape: Shape) -> list[Shape]:

@@ -14,7 +14,7 @@ import shapely
 from shapely.geometry import LineString, Point, Polygon, box
 
 from buildgen.airframe.blank import Blank, parts_of, solid_cut
-from buildgen.part import Kit, Mark, Part, Plate, Stick
+from buildgen.part import Formed, Kit, Mark, Part, Plate, Stick
 from buildgen.sheets.letters import width_mm
 from buildgen.sheets.marks import CLEAR_MM
 from buildgen.solid import Array, Placed, Pose, Shape, mesh
@@ -92,6 +92,8 @@ def _foot(part: Part, form: Plate, other: Shape) -> Polygon:
         lift = Pose(origin=np.array([0.0, 0.0, form.thickness_mm - INTO_MM]))
         blank = Blank(part.id, lift.then(part.pose), OVER_MM + INTO_MM, form.outline)
         return _covered(other, blank)
+    if isinstance(form.bend, Formed):
+        return Polygon()
     over, inside = (
         _covered(other, Blank(part.id, part.pose, high, form.outline, bend=form.bend))
         for high in (form.thickness_mm + OVER_MM, form.thickness_mm - INTO_MM)

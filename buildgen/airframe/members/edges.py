@@ -18,7 +18,7 @@ from buildgen.airframe.blank import Bar, Blank, Cut, bar_cut
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import AFT, Panel, WingShape
 from buildgen.part import Joint, Part
-from buildgen.solid import Array, Common, Pose, Ruled, Shape, circle_points, mesh, ring
+from buildgen.solid import Array, Common, Pose, Ruled, Shape, circle_points, ring
 
 STEP = "Wing: edges"
 FAR = 60.0
@@ -31,7 +31,7 @@ class Edge:
     """A length of edge stock along one panel, between two planes across the span."""
 
     shop: Shop
-    kind: Literal["square", "round", "stock"]
+    kind: Literal["square", "round", "strip", "stock"]
     name: str
     letter: str
     key: str
@@ -71,6 +71,8 @@ class Edge:
             return np.array([[0, 0], [h, -h], [2 * h, 0], [h, h]])
         if self.kind == "round":
             return circle_points(s / 2, 48) + (s / 2, 0)
+        if self.kind == "strip":
+            return np.array([[-FAR, -FAR], [s, -FAR], [s, FAR], [-FAR, FAR]])
         return np.array([[0, -FAR], [2 * s, -FAR], [2 * s, FAR], [0, FAR]])
 
     @cached_property
@@ -99,10 +101,14 @@ class Edge:
             return f"{self.size_mm:g} rod"
         if self.kind == "square":
             return f"{self.size_mm:g} x {self.size_mm:g}"
-        _, _, z0, _, _, z1 = mesh(self.shape).bounding_box()
-        root = self.panel.root.height(1 - self.size_mm / self.panel.root.chord_mm)
-        tip = self.panel.tip.height(1 - self.size_mm / self.panel.tip.chord_mm)
-        depth = max(root[1] - root[0], tip[1] - tip[0])
+        depths = []
+        for placed in (self.panel.root, self.panel.tip):
+            share = self.size_mm / placed.chord_mm
+            low, high = placed.height(share if self.kind == "strip" else 1 - share)
+            depths.append(high - low)
+        depth = max(depths)
+        if self.kind == "strip":
+            return f"{np.ceil(depth):.0f} x {self.size_mm:g}"
         return f"{np.ceil(depth):.0f} x {self.size_mm:g} tapered"
 
     def cut(self, blank: Blank) -> Cut:
@@ -112,6 +118,8 @@ class Edge:
         s = self.size_mm
         if self.kind == "stock":
             regions = [np.array([[0, -FAR], [FAR * 3, -FAR], [FAR * 3, FAR], [0, FAR]])]
+        elif self.kind == "strip":
+            regions = [np.array([[-2 * FAR, -FAR], [s, -FAR], [s, FAR], [-2 * FAR, FAR]])]
         elif self.kind == "square":
             apex = s * np.sqrt(2)
             regions = [np.array([[apex, 0], [apex - FAR, FAR], [apex - FAR, -FAR]])]
@@ -167,7 +175,7 @@ def leading(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edge
 def trailing(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edge]:
     """The trailing-edge stock of each panel."""
     given = shop.definition.wing.trailing_edge
-    if given.kind == "none":
+    if given.kind != "stock":
         return
     for panel in wing.panels:
         inner, outer = _ends(panel, 0.0, panel.length_mm)

@@ -22,6 +22,8 @@ STEP = "Wing: ribs on the spars"
 END_PLAY_MM = 0.2
 GLUE_GAP_MM = 0.1
 """A gap that a drop of thin glue still bridges; common practice, no source."""
+SURFACE_MM = 0.1
+"""A strip that lies under the surface must follow it this closely."""
 ONE_PIECE_MM = 3.0
 """Halves of a spar that differ by less at root and tip are made in one straight piece."""
 
@@ -191,8 +193,11 @@ def _piece(
     low, high = max(start, spar.from_mm), min(end, spar.to_mm or wing.half_span_mm)
     if high - low < 1.0:
         return None
-    a, b = (_place(wing, spar, s, run) for s in (low, high))
-    through = index == 0 and low == 0 and wing.flat_centre and _in_line(a, b)
+    sheeting = shop.definition.wing.sheeting
+    under = shop.thickness(sheeting.material, sheeting.thickness_mm) if sheeting else 0.0
+    a, b = (_place(wing, spar, s, run, under) for s in (low, high))
+    most = ONE_PIECE_MM if spar.place == "middle" else SURFACE_MM
+    through = index == 0 and low == 0 and wing.flat_centre and _in_line(a, b, most)
     if through:
         a, b = _straightened(a, b)
     way = (b - a) / np.linalg.norm(b - a)
@@ -210,9 +215,9 @@ def _piece(
     return piece
 
 
-def _in_line(a: Array, b: Array) -> bool:
+def _in_line(a: Array, b: Array, most_mm: float) -> bool:
     """Both halves nearly in one straight line through the middle."""
-    return bool(np.abs((a - b)[[0, 2]]).max() < ONE_PIECE_MM)
+    return bool(np.abs((a - b)[[0, 2]]).max() < most_mm)
 
 
 def _straightened(a: Array, b: Array) -> tuple[Array, Array]:
@@ -234,18 +239,28 @@ def _setback(spar: Spar, normal: Array, way: Array) -> float:
     return half * float(np.tan(lean)) + END_PLAY_MM
 
 
-def _place(wing: WingShape, spar: Spar, span: float, run: tuple[Panel, ...]) -> Array:
-    """The spar's axis at a distance along the span."""
+def _place(
+    wing: WingShape, spar: Spar, span: float, run: tuple[Panel, ...], under_mm: float
+) -> Array:
+    """The spar's axis at a distance along the span, under sheeting of this thickness."""
     share = span / wing.half_span_mm
     tip = spar.at_chord if spar.at_tip_chord is None else spar.at_tip_chord
     fraction = spar.at_chord * (1 - share) + tip * share
     panel = next(p for p in run if span <= p.start_mm + p.length_mm + 1e-9)
-    point = panel.point(span - panel.start_mm, fraction, spar.place)
+    s = span - panel.start_mm
+    point = panel.point(s, fraction, spar.place)
     if spar.place == "middle":
         return point
+    if under_mm and spar.width_mm:
+        # Flat under a curved sheet: its corners decide, not its middle.
+        beside = spar.width_mm / 2 / panel.chord(s)
+        inwards = -panel.up if spar.place == "top" else panel.up
+        corners = [panel.point(s, fraction + k * beside, spar.place) for k in (-1, 1)]
+        point = point + inwards * max(0.0, *(float((c - point) @ inwards) for c in corners))
     depth = (spar.height_mm or spar.outer_mm or 0.0) / 2
     if spar.kind != "strip":
         depth += 2.0
+    depth += under_mm
     return point - depth * panel.up * (1 if spar.place == "top" else -1)
 
 

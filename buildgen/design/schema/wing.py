@@ -46,19 +46,33 @@ class Spar(Table):
 class LeadingEdge(Table):
     """The stick along the nose."""
 
-    kind: Literal["square", "round", "none"] = Field(
-        "square", description="A square stick stands on its edge and is sanded to the section."
+    kind: Literal["square", "round", "strip", "none"] = Field(
+        "square", description="A square stick stands on its edge, a strip stands upright; both"
+        " are sanded to the section."
     )
-    size_mm: Length = 6.0
+    size_mm: Length = Field(6.0, description="Of the stick; of a strip its depth aft.")
     material: str = "balsa"
 
 
 class TrailingEdge(Table):
     """Tapered stock behind the ribs."""
 
-    kind: Literal["stock", "none"] = "stock"
+    kind: Literal["stock", "sheet", "none"] = Field(
+        "stock", description="Tapered stock, or sheet above and below the ribs."
+    )
     width_mm: Length = 20.0
+    sheet_mm: Length = Field(1.5, description="Thickness of the sheets.")
     material: str = "balsa"
+
+
+class Sheeting(Table):
+    """Sheet over the nose back to the spar, and capstrips; the ribs are inset by it."""
+
+    material: str = "balsa"
+    thickness_mm: Length = 1.5
+    nose: bool = Field(True, description="Closed nose, above and below; needs a strip in front.")
+    to_chord: Fraction | None = Field(None, description="Its aft edge; over the first spar.")
+    capstrip_mm: Extent = Field(0.0, description="Width of a strip over each rib; 0 for none.")
 
 
 class WiringHole(Table):
@@ -101,5 +115,6 @@ class Wing(Table):
     spar: Annotated[tuple[Spar, ...], Field(strict=False)] = ()
     leading_edge: LeadingEdge = LeadingEdge()
     trailing_edge: TrailingEdge = TrailingEdge()
+    sheeting: Sheeting | None = None
     wiring_hole: WiringHole | None = None
     covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
