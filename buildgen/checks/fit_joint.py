@@ -23,7 +23,7 @@ from buildgen.part import Bend, Formed, Joint, Plate
 from buildgen.solid import Array, Pose, polygons
 
 ON_EDGE = ("stick in notch", "sheet on rib")
-LAID = ("face to face", "edge to edge", *ON_EDGE)
+LAID = ("face to face", "edge to edge", "web on cap", *ON_EDGE)
 """Kinds that glue holds face to face, and kinds that are measured all round: the share of the
 inner part's outline that must lie within the band (a notch holds the floor and most of both
 sides, a hinge line one edge)."""
@@ -268,7 +268,7 @@ def _closed(inner: Manifold, outer: Manifold, shift: Array, way: Array) -> float
 
 
 def _normals(joint: Joint, inner: Solid, outer: Solid) -> list[Array]:
-    """Ways in which one may lie on the other: the way in, the facing, or the faces of the outer plate."""
+    """Ways in which one may lie on the other: the way in, the facing, or the plate's faces."""
     pushed = joint.way if joint.way is not None else joint.facing
     found = [] if pushed is None else [np.array(pushed)]
     form = outer.part.form

@@ -3,7 +3,7 @@
 from __future__ import annotations
 
 from collections.abc import Iterable
-from dataclasses import dataclass
+from dataclasses import dataclass, field, replace
 from functools import cached_property
 
 import numpy as np
@@ -22,6 +22,10 @@ STEP = "Wing: ribs on the spars"
 END_PLAY_MM = 0.2
 GLUE_GAP_MM = 0.1
 """A gap that a drop of thin glue still bridges; common practice, no source."""
+UNDER_MM = 0.1
+"""Between a straight stick and the sheet over it, filled with glue."""
+UPRIGHT_STEPS = 4
+"""Each leaves a twentieth of what a strip is out of line at 3 degrees of twist."""
 SURFACE_MM = 0.1
 """A strip that lies under the surface must follow it this closely."""
 ONE_PIECE_MM = 3.0
@@ -41,7 +45,9 @@ class SparRun:
     through: bool
     """It runs through to the other side in one piece."""
     piece: int
-    meet: Array
+    cap: str = ""
+    """"t" or "b" for the sticks of a capped spar."""
+    meet: Array = field(default_factory=lambda: np.zeros(3))
     """Where its axis meets the plane of the break inboard of it; its tube ends short of it."""
 
     @property
@@ -54,7 +60,7 @@ class SparRun:
 
     @property
     def letter(self) -> str:
-        return f"{self.number}{'abcdefgh'[self.piece]}"
+        return f"{self.number}{'abcdefgh'[self.piece]}{self.cap}"
 
     @cached_property
     def bar(self) -> Bar:
@@ -155,11 +161,21 @@ def pieces(shop: Shop, wing: WingShape) -> Iterable[tuple[Spar, list[SparRun]]]:
     """Every spar of the definition with its pieces, split at dihedral breaks."""
     for number, spar in enumerate(shop.definition.wing.spar, start=1):
         _check(spar, number, shop)
-        yield spar, [
-            piece
-            for i, run in enumerate(wing.runs)
-            if (piece := _piece(shop, wing, spar, number, run, i)) is not None
-        ]
+        for stick, cap in sticks(spar):
+            yield stick, [
+                replace(piece, cap=cap)
+                for i, run in enumerate(wing.runs)
+                if (piece := _piece(shop, wing, stick, number, run, i)) is not None
+            ]
+
+
+def sticks(spar: Spar) -> Iterable[tuple[Spar, str]]:
+    """The spar itself, or the two caps of a capped one."""
+    if spar.kind != "capped":
+        yield spar, ""
+        return
+    for place, cap in (("top", "t"), ("bottom", "b")):
+        yield spar.model_copy(update={"kind": "strip", "place": place}), cap
 
 
 def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[SparRun]:
@@ -171,13 +187,14 @@ def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[SparRun
 def _check(spar: Spar, number: int, shop: Shop) -> None:
     key = f"wing.spar[{number}]"
     shop.material(spar.material, f"{key}.material")
-    wanted = ("outer_mm",) if spar.kind != "strip" else ("width_mm", "height_mm")
+    flat = spar.kind in ("strip", "capped")
+    wanted = ("width_mm", "height_mm") if flat else ("outer_mm",)
     missing = [
         Problem(f"{key}.{name}", "is missing.", f"A {spar.kind} needs {' and '.join(wanted)}.")
         for name in wanted
         if getattr(spar, name) is None
     ]
-    if spar.kind != "strip" and spar.outer_mm and spar.inner_mm >= spar.outer_mm:
+    if not flat and spar.outer_mm and spar.inner_mm >= spar.outer_mm:
         missing.append(
             Problem(f"{key}.inner_mm", f"{spar.inner_mm:g} is not below the outside"
                     f" diameter {spar.outer_mm:g}.", "Give the bore of the tube.")
@@ -196,6 +213,14 @@ def _piece(
     sheeting = shop.definition.wing.sheeting
     under = shop.thickness(sheeting.material, sheeting.thickness_mm) if sheeting else 0.0
     a, b = (_place(wing, spar, s, run, under) for s in (low, high))
+    if under and spar.place != "middle":
+        under += UNDER_MM
+        shares = np.linspace(0.0, 1.0, 9)
+        line = [_place(wing, spar, low + k * (high - low), run, under) for k in shares]
+        inwards = -run[0].up if spar.place == "top" else run[0].up
+        proud = max(float((p - a - k * (b - a)) @ inwards)
+                    for k, p in zip(shares, line, strict=True))
+        a, b = a + proud * inwards, b + proud * inwards
     most = ONE_PIECE_MM if spar.place == "middle" else SURFACE_MM
     through = index == 0 and low == 0 and wing.flat_centre and _in_line(a, b, most)
     if through:
@@ -209,7 +234,7 @@ def _piece(
     last = run[-1].index == len(wing.panels) - 1
     short_b = 0.0 if last or high < end else _setback(spar, run[-1].outer_normal, way)
     piece = SparRun(
-        shop, number, spar, run, a + short_a * way, b - short_b * way, through, index, a
+        shop, number, spar, run, a + short_a * way, b - short_b * way, through, index, meet=a
     )
     _stays_inside(piece, wing, low, high)
     return piece
@@ -251,6 +276,11 @@ def _place(
     point = panel.point(s, fraction, spar.place)
     if spar.place == "middle":
         return point
+    # Right above and below the middle, so that the faces of two caps are in line for a web.
+    middle = panel.point(s, fraction, "middle")
+    for _ in range(UPRIGHT_STEPS):
+        fraction += float((middle - point) @ AFT) / panel.chord(s)
+        point = panel.point(s, fraction, spar.place)
     if under_mm and spar.width_mm:
         # Flat under a curved sheet: its corners decide, not its middle.
         beside = spar.width_mm / 2 / panel.chord(s)

@@ -26,12 +26,21 @@ class Panel(Table):
 class Spar(Table):
     """A spar, straight in space between the wing's dihedral breaks."""
 
-    kind: Literal["tube", "rod", "strip"] = Field("tube", description="Round, or square stick.")
-    material: str = "carbon-tube"
+    kind: Literal["tube", "rod", "strip", "capped"] = Field(
+        "tube", description="Round; a square stick; or sticks top and bottom with webs between."
+    )
+    material: str = Field("carbon-tube", description="Of a capped spar its sticks.")
     outer_mm: Length | None = Field(None, description="Outside diameter of a tube or rod.")
     inner_mm: Extent = Field(0.0, description="Bore of a tube.")
-    width_mm: Length | None = Field(None, description="Of a strip, along the chord.")
-    height_mm: Length | None = Field(None, description="Of a strip, across the chord.")
+    width_mm: Length | None = Field(None, description="Of a strip or cap, along the chord.")
+    height_mm: Length | None = Field(None, description="Of a strip or cap, across the chord.")
+    web: Literal["aft", "fore", "both"] = Field(
+        "aft", description="Faces of a capped spar that carry webs; both make a box."
+    )
+    web_material: str = "balsa"
+    web_mm: Annotated[tuple[Length, ...], Field(strict=False, min_length=1)] = Field(
+        (1.5,), description="Thickness of the webs from the root out, in equal shares of the spar."
+    )
     at_chord: Fraction = Field(0.30, description="Place at the root, fraction of the chord.")
     at_tip_chord: Fraction | None = Field(None, description="Place at the tip; as at the root.")
     place: Literal["middle", "top", "bottom"] = Field("middle", description="Height in the rib.")
