@@ -28,7 +28,7 @@ LAID = ("face to face", "edge to edge", "web on cap", *ON_EDGE)
 inner part's outline that must lie within the band (a notch holds the floor and most of both
 sides, a hinge line one edge)."""
 AROUND = {"spar in hole": 1.0, "joiner in tube": 1.0, "sleeve in tube": 1.0,
-          "joiner in sleeve": 1.0, "dowel in hole": 1.0, "tab in slot": 0.9,
+          "joiner in sleeve": 1.0, "dowel in hole": 1.0, "brace in slot": 0.9, "tab in slot": 0.9,
           "mount on tongue": 0.9, "strip in notch": 0.5, "hinged": 0.2}
 DEPTHS = {"dowel in hole": (0.4, 0.5, 0.6), "mount on tongue": (0.1, 0.2, 0.3)}
 """Where sections are taken, as shares of the depth in which both parts reach: in the middle of a

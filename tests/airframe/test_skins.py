@@ -28,6 +28,12 @@ CASES = {
         "panel": "[[wing.panel]]\nspan_mm = 200\ntip_chord_mm = 120\ndihedral_deg = 7\n"
                  "sweep_mm = 30"},
     "webs alone": {"spar": CAPPED},
+    "braced at the root": {
+        "spar": CAPPED + "brace_mm = 45", "panel": "tip_chord_mm = 190\ndihedral_deg = 6"},
+    "braced at a break": {
+        "wing": SHEETED, "spar": CAPPED + "brace_mm = 45",
+        "panel": "[[wing.panel]]\nspan_mm = 200\ntip_chord_mm = 120\ndihedral_deg = 7\n"
+                 "sweep_mm = 21"},
 }
 
 
@@ -110,3 +116,23 @@ def test_a_cone_unrolls_to_a_sector() -> None:
 def test_a_closed_nose_needs_a_strip(tmp_path: Path) -> None:
     with pytest.raises(DesignError, match="strip"):
         kit_of(tmp_path, wing="[wing.sheeting]\nthickness_mm = 1.5")
+
+
+def test_a_flat_brace_does_not_follow_a_kink_in_plan(tmp_path: Path) -> None:
+    with pytest.raises(DesignError, match="brace"):
+        kit_of(tmp_path, spar=CAPPED + "brace_mm = 45",
+               panel="tip_chord_mm = 190\ndihedral_deg = 6\nsweep_mm = 60")
+
+
+def test_a_brace_is_bent_by_the_dihedral(tmp_path: Path) -> None:
+    kit = kit_of(tmp_path, spar=CAPPED + "brace_mm = 45",
+                 panel="tip_chord_mm = 190\ndihedral_deg = 6")
+    brace = kit.by_id["DB1a"]
+    assert isinstance(brace.form, Plate)
+    ring = np.asarray(brace.form.outline.exterior.coords)[:-1]
+    low, high = ring[ring[:, 1].argsort()[:1]], ring[np.abs(ring[:, 0]).argmax()]
+    assert abs(low[0, 0]) < 0.1
+    assert abs(high[0]) == pytest.approx(45, abs=0.5)
+    # Six degrees on either side: both arms rise from the middle.
+    rise = ring[(ring[:, 1] < 0) & (np.abs(ring[:, 0]) > 40)][:, 1] - low[0, 1]
+    assert rise == pytest.approx(45 * np.tan(np.radians(6)), abs=0.2)

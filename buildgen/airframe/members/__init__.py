@@ -11,7 +11,7 @@ from typing import Protocol
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut
-from buildgen.airframe.members import edges, joiners, skins, spars, webs, wiring
+from buildgen.airframe.members import braces, edges, joiners, skins, spars, webs, wiring
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
 from buildgen.part import Joint, Part
@@ -43,6 +43,7 @@ MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ..
     edges.leading,
     edges.trailing,
     webs.make,
+    braces.make,
     skins.make,
     wiring.make,
 )

@@ -151,6 +151,25 @@ class SparRun:
         return ()
 
 
+def cap_face(
+    cap: SparRun, fore: bool, shift: float, top: bool
+) -> tuple[Array, Array]:
+    """A line along the fore or aft face of a cap: a point of it, and its direction outboard.
+
+    Args:
+        shift: up from the cap's inner face towards its outer one, as a share of its height,
+            counted upwards for the bottom cap and downwards for the top one.
+        top: the cap under the upper surface.
+    """
+    bar, spar, up = cap.bar, cap.spar, cap.run[0].up
+    aft = np.cross(bar.axis, up)
+    aft = aft if aft[0] > 0 else -aft
+    height = spar.height_mm or 0.0
+    level = (-0.5 - shift if top else 0.5 - shift) * height
+    side = (-1 if fore else 1) * aft
+    return bar.start + side * (spar.width_mm or 0.0) / 2 + up * level, bar.axis
+
+
 def vector(way: Array) -> tuple[float, float, float]:
     """As a joint wants its way."""
     x, y, z = (float(v) for v in way)

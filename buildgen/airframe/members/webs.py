@@ -51,18 +51,19 @@ class Web:
         pose = Pose.at(foot, x, y)
         if not self.fore:
             return pose
-        lift = Pose(origin=np.array([0.0, 0.0, -self._thick_mm]))
+        lift = Pose(origin=np.array([0.0, 0.0, -self.thick_mm]))
         return lift.then(pose)
 
     @property
-    def _thick_mm(self) -> float:
+    def thick_mm(self) -> float:
+        """As measured."""
         return self.shop.thickness(self.top.spar.web_material, self.nominal_mm)
 
     def _line(self, run: SparRun) -> tuple[Array, Array]:
         """Where the outer edge of a cap's glued face meets the planes of both ribs."""
         bar, spar = run.bar, run.spar
         half = (spar.width_mm or 0.0) / 2
-        up = (spar.height_mm or 0.0) / 2 - SHY_SHARE * self._thick_mm - SHY_MM
+        up = (spar.height_mm or 0.0) / 2 - SHY_SHARE * self.thick_mm - SHY_MM
         # A frame's z points aft where x runs outboard and y up.
         aft = np.cross(bar.axis, run.run[0].up)
         aft = aft if aft[0] > 0 else -aft
@@ -74,7 +75,7 @@ class Web:
     def outline(self) -> Polygon:
         """What stands clear of both ribs through the web's whole thickness."""
         shapes = []
-        for z in (0.0, self._thick_mm):
+        for z in (0.0, self.thick_mm):
             corners = []
             for run in (self.bottom, self.top):
                 for plane, gap in ((self.near, END_GAP_MM), (self.far, -END_GAP_MM)):

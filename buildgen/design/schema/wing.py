@@ -46,6 +46,11 @@ class Spar(Table):
     place: Literal["middle", "top", "bottom"] = Field("middle", description="Height in the rib.")
     from_mm: Extent = Field(0.0, description="Inner end, along the span from the centre line.")
     to_mm: Length | None = Field(None, description="Outer end; the tip.")
+    brace_mm: Extent = Field(
+        0.0, description="Length each way of a ply brace at a dihedral break of a capped spar."
+    )
+    brace_material: str = "birch-ply"
+    brace_thickness_mm: Length = 2.0
     joiner_mm: Extent = Field(
         80.0, description="Length each way of the bent joiner in a tube's bore at a break."
     )
