@@ -11,6 +11,7 @@ from buildgen.airframe.equipment import Movable, make_equipment
 from buildgen.airframe.fuselage import Body
 from buildgen.airframe.hinge import Horn
 from buildgen.airframe.members import make_members
+from buildgen.airframe.moving import control_places
 from buildgen.airframe.power import Drive
 from buildgen.airframe.ribs import make_ribs
 from buildgen.airframe.shop import Shop
@@ -43,7 +44,8 @@ class Airframe:
     @property
     def horns(self) -> tuple[Horn, ...]:
         """Where pushrods take hold: every surface that moves has one."""
-        return self.tail.horns if self.tail else ()
+        wing = (h for p in control_places(self.shop, self.wing) for h in p.horns)
+        return (*wing, *(self.tail.horns if self.tail else ()))
 
     @property
     def movable(self) -> tuple[Movable, ...]:

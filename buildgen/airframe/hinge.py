@@ -33,7 +33,7 @@ HORN_G = 1.0
 """A moulded horn with backing plate; common practice, no source."""
 HORN_HOLE_MM = 1.6
 """For a wire of 1.5 mm or the pin of a clevis; common practice, no source."""
-TAB_MM = 10.0
+TAB_MM = 8.0
 """Length of a ply horn's tab along the chord."""
 ARM_MM = 7.0
 """Width of a horn's arm round its hole."""

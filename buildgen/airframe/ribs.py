@@ -141,6 +141,8 @@ def _other_side(blank: Blank) -> Blank:
 
 def _nominal(shop: Shop, place: Place) -> float:
     """The thickness as the definition names it, from the measured one."""
+    if place.nominal_mm is not None:
+        return place.nominal_mm
     ribs, power = shop.definition.wing.ribs, shop.definition.power
     if place.bay and power:
         return power.mount.rib_thickness_mm

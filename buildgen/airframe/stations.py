@@ -7,6 +7,7 @@ from dataclasses import dataclass
 import numpy as np
 
 from buildgen.airframe.bays import Bay
+from buildgen.airframe.moving import wanted_ribs
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import Panel, WingShape
 from buildgen.solid import Array
@@ -27,6 +28,8 @@ class Place:
     """On the centre line, shared by both halves."""
     against_inner: bool = False
     """Its inner face lies on the plane in which the panel begins."""
+    nominal_mm: float | None = None
+    """Of the sheet, where something of its own asks for this rib."""
 
 
 def places(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> list[Place]:
@@ -57,6 +60,10 @@ def _panel_places(shop: Shop, wing: WingShape, panel: Panel, bays: list[Bay]) ->
         for face, side in ((bay.s_mm - bay.half_mm, "inboard"), (bay.outer_face_mm, "outboard")):
             found.append(Place(panel, face, panel.along, power.mount.rib_material, bay.rib_mm,
                                f"mount rib, motor {bay.index} {side}", bay))
+    for own in wanted_ribs(shop, wing, panel):
+        found.append(Place(panel, own.face_mm, panel.along, own.material,
+                           shop.thickness(own.material, own.nominal_mm), own.why,
+                           nominal_mm=own.nominal_mm))
     last = panel.index == len(wing.panels) - 1
     at_break = not last and _breaks(wing, panel.index)
     wood, thick = (end_wood, end) if at_break else (ribs.material, plain)

@@ -35,6 +35,14 @@ def _wing(wing: Wing) -> Iterator[tuple[str, str, str]]:
         yield "wing.leading_edge.material", wing.leading_edge.material, ""
     if wing.trailing_edge.kind != "none":
         yield "wing.trailing_edge.material", wing.trailing_edge.material, ""
+    for n, control in enumerate(wing.control, start=1):
+        key = f"wing.control[{n}]"
+        yield f"{key}.material", control.material, ""
+        yield f"{key}.spar_material", control.spar_material, "sheet"
+        yield f"{key}.horn_material", control.horn_material, "sheet"
+        if control.drive == "servo":
+            yield f"{key}.servo.material", control.servo.material, "sheet"
+            yield f"{key}.servo.rib_material", control.servo.rib_material, "sheet"
     if wing.covering:
         yield "wing.covering", wing.covering, "cover"
 

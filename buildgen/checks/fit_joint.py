@@ -30,9 +30,10 @@ sides, a hinge line one edge)."""
 AROUND = {"spar in hole": 1.0, "joiner in tube": 1.0, "sleeve in tube": 1.0,
           "joiner in sleeve": 1.0, "dowel in hole": 1.0, "brace in slot": 0.9, "tab in slot": 0.9,
           "mount on tongue": 0.9, "strip in notch": 0.5, "hinged": 0.2}
-DEPTHS = {"dowel in hole": (0.4, 0.5, 0.6), "mount on tongue": (0.1, 0.2, 0.3)}
+DEPTHS = {"dowel in hole": (0.4, 0.5, 0.6), "mount on tongue": (0.1, 0.2, 0.3),
+          "tab in slot": (0.4, 0.5, 0.6)}
 """Where sections are taken, as shares of the depth in which both parts reach: in the middle of a
-side that stands oblique, ahead of the nose on a tongue."""
+side that stands oblique, ahead of the nose on a tongue, away from a skin that slopes."""
 SAMPLE_MM = 0.5
 REACH_MM = 3.0
 """How far round the inner part the outer one is looked at; a gap beyond it is no joint."""

@@ -11,7 +11,16 @@ from typing import Protocol
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut
-from buildgen.airframe.members import braces, edges, joiners, skins, spars, webs, wiring
+from buildgen.airframe.members import (
+    braces,
+    controls,
+    edges,
+    joiners,
+    skins,
+    spars,
+    webs,
+    wiring,
+)
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
 from buildgen.part import Joint, Part
@@ -42,6 +51,7 @@ MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ..
     joiners.make,
     edges.leading,
     edges.trailing,
+    controls.make,
     webs.make,
     braces.make,
     skins.make,

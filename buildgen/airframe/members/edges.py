@@ -15,6 +15,7 @@ import numpy as np
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Bar, Blank, Cut, bar_cut
+from buildgen.airframe.moving import fixed_edge
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import AFT, Panel, WingShape
 from buildgen.part import Joint, Part
@@ -178,12 +179,15 @@ def trailing(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edg
     if given.kind != "stock":
         return
     for panel in wing.panels:
-        inner, outer = _ends(panel, 0.0, panel.length_mm)
-        yield Edge(
-            shop, "stock", f"trailing edge, panel {panel.index + 1}", f"TE{panel.index + 1}",
-            "wing.trailing_edge", given.material, given.width_mm, panel, inner, outer,
-            (0.0, panel.length_mm), panel.index == 0 and wing.flat_centre,
-        )
+        lengths = fixed_edge(shop, wing, panel)
+        for i, (low, high) in enumerate(lengths):
+            letter = f"TE{panel.index + 1}" + ("abcdefgh"[i] if len(lengths) > 1 else "")
+            inner, outer = _ends(panel, low, high)
+            yield Edge(
+                shop, "stock", f"trailing edge, panel {panel.index + 1}", letter,
+                "wing.trailing_edge", given.material, given.width_mm, panel, inner, outer,
+                (low, high), low == 0 and panel.index == 0 and wing.flat_centre,
+            )
 
 
 def _ends(panel: Panel, low: float, high: float) -> tuple[Pose, Pose]:

@@ -12,6 +12,7 @@ from typing import Annotated
 from pydantic import Field
 
 from buildgen.design.schema.balance import Balance
+from buildgen.design.schema.control import Control, ControlServo
 from buildgen.design.schema.equipment import Equipment
 from buildgen.design.schema.fuselage import Fuselage, Station
 from buildgen.design.schema.power import Motor, Mount, Power, Propeller
@@ -53,6 +54,8 @@ class Definition(Table):
 
 __all__ = [
     "Balance",
+    "Control",
+    "ControlServo",
     "Definition",
     "Equipment",
     "Fuselage",

@@ -11,6 +11,7 @@ Length: TypeAlias = Annotated[float, Strict(), Field(gt=0, le=20000, allow_inf_n
 Extent: TypeAlias = Annotated[float, Strict(), Field(ge=0, le=20000, allow_inf_nan=False)]
 Mass: TypeAlias = Annotated[float, Strict(), Field(ge=0, le=100000, allow_inf_nan=False)]
 Angle: TypeAlias = Annotated[float, Strict(), Field(ge=-60, le=60, allow_inf_nan=False)]
+Throw: TypeAlias = Annotated[float, Strict(), Field(ge=0, le=60, allow_inf_nan=False)]
 Fraction: TypeAlias = Annotated[float, Strict(), Field(ge=0, le=1, allow_inf_nan=False)]
 Count: TypeAlias = Annotated[int, Strict(), Field(ge=1, le=200)]
 Lengths: TypeAlias = Annotated[tuple[Number, ...], Field(strict=False)]

@@ -6,6 +6,7 @@ from typing import Annotated, Literal
 
 from pydantic import Field
 
+from buildgen.design.schema.control import Control
 from buildgen.design.schema.types import Angle, Count, Extent, Fraction, Length, Number, Table
 
 
@@ -130,5 +131,8 @@ class Wing(Table):
     leading_edge: LeadingEdge = LeadingEdge()
     trailing_edge: TrailingEdge = TrailingEdge()
     sheeting: Sheeting | None = None
+    control: Annotated[tuple[Control, ...], Field(strict=False)] = Field(
+        (), description="Ailerons, flaps, elevons."
+    )
     wiring_hole: WiringHole | None = None
     covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
