@@ -55,6 +55,7 @@ class Horn:
         radius_mm: of the pivot about the hinge line.
         throw_deg: (towards the side `up` of the surface, away from it), both positive.
         key: of the definition.
+        driven_by: id of the servo beside it that has its own pushrod already; else empty.
     """
 
     surface: str
@@ -67,12 +68,14 @@ class Horn:
     radius_mm: float
     throw_deg: tuple[float, float]
     key: str
+    driven_by: str = ""
 
-    def mirrored(self, id: str, part: str, surface: str) -> Horn:
+    def mirrored(self, id: str, part: str, surface: str, driven_by: str = "") -> Horn:
         """The horn of the other side of the aircraft."""
         flip = np.array([1.0, -1.0, 1.0])
         return Horn(surface, part, id, self.pivot_mm * flip, self.hinge_mm * flip,
-                    -self.axis * flip, self.side * flip, self.radius_mm, self.throw_deg, self.key)
+                    -self.axis * flip, self.side * flip, self.radius_mm, self.throw_deg, self.key,
+                    driven_by)
 
 
 @dataclass(frozen=True, eq=False)

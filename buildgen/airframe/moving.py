@@ -7,7 +7,7 @@ only ask here which ribs must stand at their ends and where the fixed trailing e
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 
 from buildgen.airframe.hinge import HingeLine, Horn, horn_at
@@ -143,8 +143,9 @@ class ControlPlace:
         radius = self.given.horn_mm or round(deep + HORN_MM, 1)
         n = self.number
         part = f"AN{n}R" if self.given.kind == "built-up" else f"AS{n}R"
-        return horn_at(self.line, s, radius, "up" if up else "down", self.throw_deg, f"AP{n}R",
+        horn = horn_at(self.line, s, radius, "up" if up else "down", self.throw_deg, f"AP{n}R",
                        part, f"{self.given.name}, right", self.key)
+        return replace(horn, driven_by=f"AV{n}R") if self.servo else horn
 
     @property
     def horns(self) -> tuple[Horn, ...]:
@@ -152,7 +153,8 @@ class ControlPlace:
         if self.horn is None:
             return ()
         n = self.number
-        other = self.horn.mirrored(f"AP{n}L", self.horn.part[:-1] + "L", f"{self.given.name}, left")
+        other = self.horn.mirrored(f"AP{n}L", self.horn.part[:-1] + "L", f"{self.given.name}, left",
+                                   f"AV{n}L" if self.servo else "")
         return self.horn, other
 
     # ------------------------------------------------------------ ribs
@@ -251,6 +253,10 @@ def _faults(
                 f"The {given.name} is {min(widths):.0f} mm wide at its narrow end: nose, horn and"
                 f" edge need {least:.0f} mm.",
                 'Make it wider, edge_mm or nose_mm less, or take kind = "strip".')
+    if given.drive == "servo" and given.horn_side == "up":
+        yield Problem(f"{place.key}.horn_side",
+                      "The servo's arm comes out below the wing, the horn stands above it.",
+                      'Take horn_side = "down", or drive = "none".')
     bay = place.servo_bay_mm
     if bay is not None and (bay[0] < low + 8 or bay[1] > high - 8):
         least, most = (panel.start_mm + low + 8 + (bay[1] - bay[0]) / 2,
@@ -258,6 +264,12 @@ def _faults(
         yield Problem(f"{place.key}.servo.at_mm",
                       f"The servo's bay does not lie ahead of the {given.name}.",
                       f"Place it between {least:.0f} and {most:.0f} mm.")
+
+
+def lead_reach_mm(shop: Shop, wing: WingShape) -> float:
+    """How far out along the span a servo's lead must come; 0 without servos in the wing."""
+    bays = ((p, p.servo_bay_mm) for p in control_places(shop, wing))
+    return max((p.panel.start_mm + bay[0] + 1 for p, bay in bays if bay), default=0.0)
 
 
 def wanted_ribs(shop: Shop, wing: WingShape, panel: Panel) -> Iterator[Station]:

@@ -10,7 +10,11 @@ from buildgen.airframe.bays import Bay
 from buildgen.airframe.moving import wanted_ribs
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import Panel, WingShape
+from buildgen.problems import DesignError, Problem
 from buildgen.solid import Array
+
+BETWEEN_MM = 1.0
+"""Between two ribs, for glue and fingers; common practice, no source."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -30,6 +34,11 @@ class Place:
     """Its inner face lies on the plane in which the panel begins."""
     nominal_mm: float | None = None
     """Of the sheet, where something of its own asks for this rib."""
+
+    @property
+    def middle_mm(self) -> float:
+        """Along its panel."""
+        return self.face_mm - self.thickness_mm / 2
 
 
 def places(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> list[Place]:
@@ -60,10 +69,7 @@ def _panel_places(shop: Shop, wing: WingShape, panel: Panel, bays: list[Bay]) ->
         for face, side in ((bay.s_mm - bay.half_mm, "inboard"), (bay.outer_face_mm, "outboard")):
             found.append(Place(panel, face, panel.along, power.mount.rib_material, bay.rib_mm,
                                f"mount rib, motor {bay.index} {side}", bay))
-    for own in wanted_ribs(shop, wing, panel):
-        found.append(Place(panel, own.face_mm, panel.along, own.material,
-                           shop.thickness(own.material, own.nominal_mm), own.why,
-                           nominal_mm=own.nominal_mm))
+    found += _asked_for(shop, wing, panel, found)
     last = panel.index == len(wing.panels) - 1
     at_break = not last and _breaks(wing, panel.index)
     wood, thick = (end_wood, end) if at_break else (ribs.material, plain)
@@ -71,6 +77,28 @@ def _panel_places(shop: Shop, wing: WingShape, panel: Panel, bays: list[Bay]) ->
     found.append(Place(panel, panel.length_mm, panel.outer_normal, wood, thick, why))
     found.sort(key=lambda p: p.face_mm)
     return _filled(shop, panel, found, bays, plain)
+
+
+def _asked_for(shop: Shop, wing: WingShape, panel: Panel, fixed: list[Place]) -> list[Place]:
+    """Ribs that moving surfaces ask for; each needs room of its own."""
+    found: list[Place] = []
+    problems: list[Problem] = []
+    for own in wanted_ribs(shop, wing, panel):
+        thick = shop.thickness(own.material, own.nominal_mm)
+        place = Place(panel, own.face_mm, panel.along, own.material, thick, own.why,
+                      nominal_mm=own.nominal_mm)
+        for other in [*fixed, *found]:
+            least = (thick + other.thickness_mm) / 2 + BETWEEN_MM
+            apart = abs(place.middle_mm - other.middle_mm)
+            if apart < least:
+                problems.append(Problem(
+                    own.key, f"The {own.why} stands in the {other.why},"
+                    f" {panel.start_mm + other.middle_mm:.0f} mm along the span.",
+                    f"Move it by {least - apart:.1f} mm or more."))
+        found.append(place)
+    if problems:
+        raise DesignError(*problems)
+    return found
 
 
 def _breaks(wing: WingShape, index: int) -> bool:

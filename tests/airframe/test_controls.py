@@ -9,12 +9,14 @@ from tempfile import TemporaryDirectory
 import numpy as np
 import pytest
 
+import buildgen.design
 from buildgen import Build, build, load
 from buildgen.airframe.moving import control_places
 from buildgen.part import Plate
 from buildgen.problems import DesignError
 from buildgen.solid import Pose, mesh
 
+SHIPPED = Path(buildgen.design.__file__).parent / "shipped"
 WING = """
 name = "plover"
 [wing]
@@ -37,7 +39,8 @@ BUILT_UP = "from_mm = 130\nchord = 0.24"
 KINDS = {
     "built-up": BUILT_UP,
     "strip": 'kind = "strip"\nfrom_mm = 130\nto_mm = 380\nwidth_mm = 38\nhinge = "top"',
-    "block": 'kind = "block"\nfrom_mm = 130\nhinges = "tape"\nhorn_side = "up"\ndown_deg = 25',
+    "block": 'kind = "block"\nfrom_mm = 130\nhinges = "tape"\ndown_deg = 25',
+    "from elsewhere": 'kind = "block"\nfrom_mm = 130\nhorn_side = "up"\ndrive = "none"',
 }
 
 
@@ -107,9 +110,60 @@ def test_both_sides_are_mirror_images(made):
      "wing.control[2].from_mm"),
     ("from_mm = 130\nchord = 0.1", "wing.control[1].chord"),
     ("from_mm = 130\nservo = { at_mm = 100 }", "wing.control[1].servo.at_mm"),
+    ('from_mm = 130\nhorn_side = "up"', "wing.control[1].horn_side"),
     ("from_mm = 130\nservo = { kind = \"mikro\" }", "wing.control[1].servo.kind"),
 ])
 def test_faults_name_their_key(control, key):
     with pytest.raises(DesignError) as caught:
         wing(control)
     assert key in [p.path for p in caught.value.problems]
+
+
+# ---------------------------------------------------------------- servos
+
+
+def test_servo_arm_and_horn_lie_in_one_plane():
+    kit = wing(BUILT_UP)
+    place = control_places(kit.frame.shop, kit.frame.wing)[0]
+    horn = place.horn
+    assert horn is not None and horn.driven_by in kit.by_id
+    arm, s = kit.by_id["AK1R"], place.arm_s_mm
+    root, along = place.panel.root.nose, place.panel.along
+    assert (horn.pivot_mm - root) @ along == pytest.approx(s, abs=1.0)
+    assert (arm.centroid_mm - root) @ along == pytest.approx(s, abs=1.0)
+
+
+def test_pushrod_is_as_long_as_its_pins_are_apart():
+    """By hand: the distance of the two pins, and 8 mm of wire at either end for the bends."""
+    kit = wing(BUILT_UP)
+    rod, arm = kit.by_id["AW1R"], kit.by_id["AK1R"]
+    horn = control_places(kit.frame.shop, kit.frame.wing)[0].horn
+    lowest = arm.centroid_mm
+    apart = np.linalg.norm(horn.pivot_mm - lowest)
+    assert rod.form.length_mm == pytest.approx(apart + 16.0, rel=0.15)
+    assert f"{rod.form.length_mm - 16:.1f} mm" in rod.name
+
+
+def test_leads_reach_every_servo_through_holes_that_pass_their_plug():
+    """Every rib from the root to the servo has a hole of 8.6 mm or more (plug 8 x 3 mm)."""
+    kit = wing(BUILT_UP)
+    place = control_places(kit.frame.shop, kit.frame.wing)[0]
+    inside = [p for p in kit.parts if p.id[0] == "R" and p.id.endswith("R")
+              and p.pose.origin[1] < place.servo_bay_mm[0] + 1]
+    assert len(inside) >= 4
+    assert all(max(r for _, _, r in p.form.circles) * 2 >= 8.6 for p in inside)
+
+
+def test_a_servo_too_thick_for_the_wing_is_said():
+    with pytest.raises(DesignError, match="stands .* mm out of the wing"):
+        wing('from_mm = 130\nservo = { kind = "standard" }')
+
+
+def test_a_rib_in_a_rib_is_said(tmp_path):
+    """The servo's bay reaches into that of a motor."""
+    text = (SHIPPED / "marram.toml").read_text()
+    assert "at_mm = 568" in text
+    path = tmp_path / "marram.toml"
+    path.write_text(text.replace("at_mm = 568", "at_mm = 560"))
+    with pytest.raises(DesignError, match="Move it by"):
+        build(load(path))

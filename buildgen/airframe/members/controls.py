@@ -354,12 +354,12 @@ class MovingSurface:
         for k, (leaf, hole) in enumerate(zip(self.leaves, room, strict=True), start=1):
             s = self.leaf_stations[k - 1]
             above, below = self._room_at(s)
-            h = min(high / 2, above - 1.0, below - 1.0)
-            block = Placed(Box((front - deep, -h, -wide / 2), (front, h, wide / 2)), leaf.pose)
+            top, low = min(high / 2, above - 1.0), min(high / 2, below - 0.5)
+            block = Placed(Box((front - deep, -low, -wide / 2), (front, top, wide / 2)), leaf.pose)
             part = self.shop.stick(
                 f"AB{self.n}{'abcdefghijklmnopqrstuvwxyz'[k - 1]}R",
                 f"hinge block of the {given.name}, right", given.material,
-                f"{deep:g} x {2 * h:.1f}", Difference(block, (hole,)), wide, STEP, self.place.key)
+                f"{deep:g} x {top + low:.1f}", Difference(block, (hole,)), wide, STEP, self.place.key)
             found.append(in_frame(part, leaf.pose))
         return found
 

@@ -5,11 +5,19 @@ from __future__ import annotations
 from collections.abc import Iterable
 from dataclasses import dataclass
 
+import numpy as np
+
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut
+from buildgen.airframe.moving import lead_reach_mm
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
+from buildgen.design.schema import WiringHole
 from buildgen.part import Joint, Part
+from buildgen.problems import DesignError, Problem
+
+AHEAD = 0.1
+"""Of the chord, ahead of the servo: the lead comes in beside its case."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -51,9 +59,28 @@ class Wiring:
 
 
 def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Wiring]:
-    """One way, where the definition asks for it."""
-    hole = shop.definition.wing.wiring_hole
+    """One way, where the definition asks for it, or where servos stand in the wing.
+
+    Raises:
+        DesignError: the plug of a servo's lead does not pass the hole.
+    """
+    hole, servos = shop.definition.wing.wiring_hole, lead_reach_mm(shop, wing)
+    if hole is None and servos:
+        at = min(c.servo.at_chord for c in shop.definition.wing.control if c.drive == "servo")
+        hole = WiringHole(diameter_mm=np.ceil(plug_mm(shop) + 1.0), at_chord=at - AHEAD)
     if hole is None:
         return
+    if servos and hole.diameter_mm < plug_mm(shop):
+        raise DesignError(Problem(
+            "wing.wiring_hole.diameter_mm",
+            f"The plug of a servo's lead, {plug_mm(shop):.1f} mm across, does not pass a hole of"
+            f" {hole.diameter_mm:g} mm.", f"Make it {np.ceil(plug_mm(shop)):.0f} mm or more."))
     reach = bays[-1].span_mm + bays[-1].half_mm + 20 if bays else wing.half_span_mm
-    yield Wiring(wing, hole.at_chord, hole.diameter_mm, reach)
+    if shop.definition.wing.wiring_hole is None:
+        reach = servos
+    yield Wiring(wing, hole.at_chord, hole.diameter_mm, max(reach, servos))
+
+
+def plug_mm(shop: Shop) -> float:
+    """Across the corners of a servo's plug: what its hole must pass."""
+    return float(np.hypot(*shop.shelf.connector("servo-plug").size_mm))

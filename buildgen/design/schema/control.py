@@ -16,7 +16,7 @@ class ControlServo(Table):
     at_mm: Length | None = Field(
         None, description="Along the span; the middle of the surface."
     )
-    at_chord: Fraction = Field(0.56, description="Middle of its body, fraction of the chord.")
+    at_chord: Fraction = Field(0.52, description="Middle of its body, fraction of the chord.")
     material: str = Field("birch-ply", description="Of the plate that frames it and of the hatch.")
     thickness_mm: Length = 2.0
     rib_material: str = Field("lite-ply", description="Of the two ribs that carry the plate.")
