@@ -50,6 +50,7 @@ from buildgen.solid import (
 STEP = "Wing: edges"
 MOVING = "Wing: control surfaces"
 FAR = 60.0
+LETTERS = "abcdefghijklmnopqrstuvwxyz"
 GLUE_MM = 0.3
 """What glue may fill between a false spar and a rib cut square to its sheet."""
 SLOT_PLAY_MM = 0.05
@@ -190,15 +191,14 @@ class MovingSurface:
 
     @cached_property
     def bay_middles(self) -> list[float]:
-        """Along the hinge line: middles of the bays between ribs, widest first where equal."""
+        """Along the hinge line: middles of the bays between ribs, but that of the horn."""
         line, panel = self.place.line, self.place.panel
         scale = 1 / float(line.axis @ panel.along)
-        servo = self.place.servo_bay_mm
         found = []
         for a, b in pairwise(self.marks):
             middle = (a + b) / 2
-            busy = servo is not None and servo[0] < middle < servo[1]
-            if b - a > BLOCK_MM[1] + 6 and not busy:
+            horn = self.place.horn is not None and a < self.place.arm_s_mm < b
+            if b - a > BLOCK_MM[1] + 6 and not horn:
                 found.append((middle - self.place.ends_mm[0]) * scale)
         return found
 
@@ -324,7 +324,7 @@ class MovingSurface:
         inner = Pose(pose.rotation, pose.origin + pose.rotation[:, 2] * thick)
         other = Polygon(pose.local(panel.ring(inner))[:, :2])
         whole = max(parts_of(panel.outline(pose).intersection(other)), key=lambda p: p.area)
-        id = f"AR{self.n}{'abcdefghijklmnopqrstuvwxyz'[k - 1]}R"
+        id = f"AR{self.n}{LETTERS[k - 1]}R"
         blank = Blank(id, pose, thick, whole)
         outline, _, _ = apply(whole, [self._ahead(blank), self.edge.cut(blank)])
         return self.shop.plate(id, f"rib tail of the {given.name}, right", given.material,
@@ -357,9 +357,9 @@ class MovingSurface:
             top, low = min(high / 2, above - 1.0), min(high / 2, below - 0.5)
             block = Placed(Box((front - deep, -low, -wide / 2), (front, top, wide / 2)), leaf.pose)
             part = self.shop.stick(
-                f"AB{self.n}{'abcdefghijklmnopqrstuvwxyz'[k - 1]}R",
-                f"hinge block of the {given.name}, right", given.material,
-                f"{deep:g} x {top + low:.1f}", Difference(block, (hole,)), wide, STEP, self.place.key)
+                f"AB{self.n}{LETTERS[k - 1]}R", f"hinge block of the {given.name}, right",
+                given.material, f"{deep:g} x {top + low:.1f}", Difference(block, (hole,)), wide,
+                STEP, self.place.key)
             found.append(in_frame(part, leaf.pose))
         return found
 
