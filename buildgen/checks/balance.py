@@ -18,6 +18,7 @@ from buildgen.aero.balance import (
 )
 from buildgen.airframe import Airframe
 from buildgen.airframe.equipment import moved
+from buildgen.checks import tailless
 from buildgen.checks.report import Balance, Ballast, GroupRow, Movable
 from buildgen.part import Kit, Part
 from buildgen.solid import Array
@@ -53,8 +54,8 @@ def neutral_point(frame: Airframe) -> Neutral:
     area = 2 * planform.area_mm2(plan)
     span = 2 * sum(p.rise_mm[0] for p in plan)
     if frame.tail is None:
-        return Neutral(mean.quarter_x_mm, mean.length_mm, mean.le_x_mm, span, area, 0.0, 0.0,
-                       "quarter of the mean chord, wing alone")
+        return Neutral(tailless.wing_neutral_x_mm(plan), mean.length_mm, mean.le_x_mm, span, area,
+                       0.0, tailless.fin_volume(frame), tailless.BASIS)
     tail = frame.tail
     half = (tail.tailplane.panel,)
     tail_area = 2 * tail.tailplane.area_mm2

@@ -9,6 +9,8 @@ from buildgen.checks.desk import Check, Desk, verdict
 
 TAIL_VOLUME = (0.35, 0.80)
 FIN_VOLUME = (0.02, 0.05)
+TAILLESS_FIN_VOLUME = (0.012, 0.04)
+"""Tip fins of swept flying wings, whose sweep helps; common practice, no source."""
 BASIS_VOLUME = "tail volume coefficient (Raymer, chapter 6); bands for models: common practice"
 CUBE_LOADING = (2.0, 12.0)
 """kg/m3: gliders and slow flyers to fast sport models; common practice, no source."""
@@ -21,12 +23,14 @@ HAND_LAUNCH_M_S = 12.0
 
 def tail_volumes(desk: Desk) -> Iterator[Check]:
     """Tailplane and fin large enough by their volume coefficients."""
-    if desk.frame.tail is None:
-        return
-    for id, title, value, (low, high) in (
+    rows: tuple[tuple[str, str, float, tuple[float, float]], ...] = (
         ("tail-volume", "Tailplane volume", desk.neutral.tail_volume, TAIL_VOLUME),
         ("fin-volume", "Fin volume", desk.neutral.fin_volume, FIN_VOLUME),
-    ):
+    )
+    if desk.frame.tail is None:
+        rows = (("fin-volume", "Volume of the tip fins", desk.neutral.fin_volume,
+                 TAILLESS_FIN_VOLUME),) if desk.neutral.fin_volume else ()
+    for id, title, value, (low, high) in rows:
         good = low <= value <= high
         small = value < low
         advice = "" if good else (

@@ -19,6 +19,7 @@ from buildgen.airframe.members import (
     servos,
     skins,
     spars,
+    tip_fins,
     webs,
     wiring,
 )
@@ -57,6 +58,7 @@ MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ..
     webs.make,
     braces.make,
     skins.make,
+    tip_fins.make,
     wiring.make,
 )
 

@@ -146,7 +146,9 @@ class Edge:
             return None
         ahead = -1.0 if self.kind == "stock" else 1.0
         play = self.shop.press_mm
-        return Joint("stick in notch", self.parts[0].id, blank.id, (0.0, play + BEVEL_MM),
+        axis = blank.pose.rotation.T @ self.bar(self.raw).axis
+        slack = play + BEVEL_MM + blank.thickness_mm * abs(float(axis[0] / axis[2]))
+        return Joint("stick in notch", self.parts[0].id, blank.id, (0.0, slack),
                      (ahead, 0.0, 0.0))
 
     @property

@@ -118,6 +118,19 @@ class Ribs(Table):
     lightening: Lightening = Lightening()
 
 
+class TipFin(Table):
+    """A fin of sheet on the outer face of either tip rib."""
+
+    height_mm: Length = 120.0
+    below_mm: Extent = Field(0.0, description="How far a smaller part reaches below the wing.")
+    root_chord_mm: Length | None = Field(None, description="At the wing; the tip's chord.")
+    tip_chord_mm: Length | None = Field(None, description="At its top; 0.6 of that at the wing.")
+    sweep_mm: Number = Field(40.0, description="How far the top of its leading edge lies aft.")
+    aft_mm: Number = Field(0.0, description="Its trailing edge behind that of the wing.")
+    material: str = "balsa"
+    thickness_mm: Length = 3.0
+
+
 class Wing(Table):
     """The wing: its root's leading edge is the origin of the aircraft."""
 
@@ -134,5 +147,6 @@ class Wing(Table):
     control: Annotated[tuple[Control, ...], Field(strict=False)] = Field(
         (), description="Ailerons, flaps, elevons."
     )
+    tip_fin: TipFin | None = None
     wiring_hole: WiringHole | None = None
     covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
