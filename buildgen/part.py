@@ -61,6 +61,8 @@ class Part:
         from_key: the key of the definition it comes from.
         density_kg_m3: 0 for bought items, coverings and allowances.
         basis: how its mass was found: "measured", "catalogue", "estimated".
+        tool: made with the kit but no part of the aircraft: it weighs nothing in it, and neither
+            the dry fit nor the model sees it.
     """
 
     id: str
@@ -73,6 +75,11 @@ class Part:
     density_kg_m3: float = 0.0
     density_sigma_kg_m3: float = 0.0
     basis: str = "estimated"
+    tool: bool = False
+
+    def as_tool(self) -> Part:
+        """The same, to build with and not to fly with."""
+        return replace(self, tool=True)
 
     @property
     def process(self) -> Process:
@@ -98,6 +105,9 @@ class Part:
 
     @cached_property
     def mass_g(self) -> float:
+        """In the aircraft: a tool has none."""
+        if self.tool:
+            return 0.0
         match self.form:
             case Bought() | Allowance():
                 return self.form.mass_g
@@ -108,6 +118,8 @@ class Part:
     @cached_property
     def mass_sigma_g(self) -> float:
         """One standard deviation of the mass, from its material's spread."""
+        if self.tool:
+            return 0.0
         match self.form:
             case Bought() | Allowance():
                 return self.form.mass_sigma_g
@@ -286,6 +298,11 @@ class Kit:
     def of(self, *processes: Process) -> tuple[Part, ...]:
         """The parts made by these processes, in order."""
         return tuple(p for p in self.parts if p.process in processes)
+
+    @cached_property
+    def flying(self) -> tuple[Part, ...]:
+        """Every part of the aircraft: all but the tools."""
+        return tuple(p for p in self.parts if not p.tool)
 
     @cached_property
     def steps(self) -> tuple[str, ...]:

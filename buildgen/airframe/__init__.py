@@ -10,6 +10,7 @@ from buildgen.airframe.covering import glue, plate_covers, wing_covers
 from buildgen.airframe.equipment import Movable, make_equipment
 from buildgen.airframe.fuselage import Body
 from buildgen.airframe.hinge import Horn
+from buildgen.airframe.jigs import make_jigs
 from buildgen.airframe.members import make_members
 from buildgen.airframe.moving import control_places
 from buildgen.airframe.power import Drive
@@ -103,8 +104,8 @@ def make_kit(frame: Airframe, title: Title) -> Kit:
         covers += plate_covers(shop, tail, "CT", "covering of the tail", definition.tail.covering,
                                "tail.covering", True)
     groups = {"wing": wing_parts, "fuselage": body, "tail": tail, "mounts": power}
-    parts = [*wing_parts, *body, *tail, *covers, *power, *frame.equipment[0],
-             *glue(shop, groups)]
+    parts = [*make_jigs(shop, wing, drive.bays), *wing_parts, *body, *tail, *covers, *power,
+             *frame.equipment[0], *glue(shop, groups)]
     more: list[Joint] = [*ribs.joints, *(j for m in members for j in m.joints)]
     more += frame.body.joints if frame.body else ()
     more += frame.tail.joints if frame.tail else ()

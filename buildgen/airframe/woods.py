@@ -43,6 +43,8 @@ def _wing(wing: Wing) -> Iterator[tuple[str, str, str]]:
         if control.drive == "servo":
             yield f"{key}.servo.material", control.servo.material, "sheet"
             yield f"{key}.servo.rib_material", control.servo.rib_material, "sheet"
+    if wing.jig:
+        yield "wing.jig.material", wing.jig.material, "sheet"
     if wing.tip_fin:
         yield "wing.tip_fin.material", wing.tip_fin.material, "sheet"
     if wing.covering:

@@ -64,7 +64,7 @@ class Solid:
 def solids(kit: Kit) -> tuple[Solid, ...]:
     """Everything solid that stands still, in the order of the build."""
     return tuple(
-        Solid(part, solid) for part in kit.parts
+        Solid(part, solid) for part in kit.flying
         if part.material not in MOVING and (solid := part.solid) is not None
     )
 

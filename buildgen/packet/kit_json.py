@@ -68,6 +68,8 @@ def part_json(package: Package, part: Part) -> Json:
         "step": part.step,
         "from_key": part.from_key,
     }
+    if part.tool:
+        entry["note"] = "tool: cut with the kit, no part of the aircraft"
     if isinstance(part.form, Plate):
         entry["thickness_mm"] = mm(part.form.thickness_mm)
         entry["sheet"] = package.sheet_file(part)

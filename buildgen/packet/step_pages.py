@@ -33,7 +33,7 @@ def step_pages(package: Package) -> list[Flowable]:
     for number, step in enumerate(package.kit.steps, start=1):
         new = [p for p in package.kit.parts if p.step == step]
         story += _block(package, words.STEP.format(number=number, name=step), new, earlier)
-        earlier += new
+        earlier += [p for p in new if not p.tool]
     return story
 
 

@@ -112,7 +112,7 @@ def nearness_mm(part: Part, way: Direction) -> float:
 
 def view_of(kit: Kit, way: Direction, tolerance_mm: float = 0.3) -> View:
     """Every part's silhouette and the outline of the whole."""
-    shadows = [(p, eased(silhouette(p, way), tolerance_mm)) for p in kit.parts]
+    shadows = [(p, eased(silhouette(p, way), tolerance_mm)) for p in kit.flying]
     shadows = [(p, s) for p, s in shadows if not s.is_empty]
     whole = shapely.union_all([shapely.buffer(s, 0.05) for _, s in shadows])
     pieces = whole.geoms if isinstance(whole, MultiPolygon) else [whole]

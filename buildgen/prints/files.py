@@ -88,7 +88,7 @@ def start(parts: Iterable[Part], folder: Path) -> Running:
 
 def start_all(kit: Kit, folder: Path, assembly: Path) -> Running:
     """Begin to build the prints into `folder` and the whole aircraft into the STEP file."""
-    work = Work(jobs_of(kit.of("print")), kit.title.name, pieces_of(kit.parts),
+    work = Work(jobs_of(kit.of("print")), kit.title.name, pieces_of(kit.flying),
                 str(assembly.resolve()))
     return _begin(work, folder)
 

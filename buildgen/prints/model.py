@@ -31,7 +31,7 @@ def glb(kit: Kit) -> bytes:
     import trimesh
 
     scene = trimesh.Scene(base_frame="aircraft")
-    for part in kit.parts:
+    for part in kit.flying:
         solid = _triangles(part)
         if solid is None:
             matrix = np.eye(4)

@@ -49,7 +49,7 @@ class Solid:
 def with_seats(kit: Kit) -> dict[str, Part]:
     """The kit's plates by id, with lines and names where others sit and where sticks pass."""
     solids = [
-        Solid(p, Placed(p.form.shape, p.pose)) for p in kit.parts
+        Solid(p, Placed(p.form.shape, p.pose)) for p in kit.flying
         if isinstance(p.form, Plate | Stick)
     ]
     return {s.part.id: _marked(s, solids) for s in solids if isinstance(s.part.form, Plate)}

@@ -15,6 +15,7 @@ from buildgen.design.schema.balance import Balance
 from buildgen.design.schema.control import Control, ControlServo
 from buildgen.design.schema.equipment import Equipment
 from buildgen.design.schema.fuselage import Fuselage, Station
+from buildgen.design.schema.jig import Jig
 from buildgen.design.schema.power import Motor, Mount, Power, Propeller
 from buildgen.design.schema.shop import Laser, Offcut, Print, Sheet, Speed, Stock
 from buildgen.design.schema.tail import Surface, Tail
@@ -60,6 +61,7 @@ __all__ = [
     "Definition",
     "Equipment",
     "Fuselage",
+    "Jig",
     "Laser",
     "LeadingEdge",
     "Lightening",

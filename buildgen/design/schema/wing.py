@@ -7,6 +7,7 @@ from typing import Annotated, Literal
 from pydantic import Field
 
 from buildgen.design.schema.control import Control
+from buildgen.design.schema.jig import Jig
 from buildgen.design.schema.types import Angle, Count, Extent, Fraction, Length, Number, Table
 
 
@@ -148,5 +149,6 @@ class Wing(Table):
         (), description="Ailerons, flaps, elevons."
     )
     tip_fin: TipFin | None = None
+    jig: Jig | None = Field(None, description="A cradle that holds each panel on the board.")
     wiring_hole: WiringHole | None = None
     covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
