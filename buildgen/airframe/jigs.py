@@ -27,6 +27,8 @@ STEP = "Jigs: the board is set up"
 KEY = "wing.jig"
 CLEAR_MM = 0.3
 """Between a plate's stop and the nose: the finished nose must come out."""
+NOSE_MM = 4.0
+"""How deep the gap between nose and stop reaches."""
 TAIL_MM = 1.0
 """A plate ends this far ahead of the trailing edge."""
 RAIL_MOST_MM = 280.0
@@ -85,11 +87,12 @@ class Cradle:
         x0, _, x1, _ = wing.bounds
         nose_y = max(float(p.exterior.coords[int(np.argmin(np.array(p.exterior.coords)[:, 0]))][1])
                      for p in sections)
-        front = box(x0 - self.given.stop_mm, self.board_mm, x1 - TAIL_MM, nose_y)
-        room = wing.union(box(x0 - CLEAR_MM, nose_y - 0.2, x0 + 2, nose_y + 9))
-        ahead = box(x0 - CLEAR_MM, 0.0, x0 + 1.0, nose_y + 9) if nose_y > 0 else Polygon()
-        pieces = parts_of(front.difference(shapely.union_all([room, ahead])))
-        return min(pieces, key=lambda p: p.bounds[1] - p.area * 1e-9)
+        below = parts_of(box(x0, self.board_mm, x1 - TAIL_MM, 500.0).difference(wing))
+        under = min(below, key=lambda p: p.bounds[1])
+        stop = box(x0 - self.given.stop_mm, self.board_mm, x0 - CLEAR_MM, nose_y)
+        foot = box(x0 - self.given.stop_mm, self.board_mm, x0 + 0.1, nose_y - NOSE_MM)
+        whole = shapely.union_all([under, stop, foot]).difference(wing)
+        return max(parts_of(whole), key=lambda p: p.area)
 
     @cached_property
     def rails_x_mm(self) -> tuple[float, ...]:
