@@ -2,11 +2,12 @@
 
 from __future__ import annotations
 
-from typing import Annotated, Literal
+from typing import Annotated, Any, Literal
 
-from pydantic import Field
+from pydantic import Field, ValidationError, model_validator
 
 from buildgen.design.schema.control import Control
+from buildgen.design.schema.elliptic import Elliptic
 from buildgen.design.schema.jig import Jig
 from buildgen.design.schema.types import Angle, Count, Extent, Fraction, Length, Number, Table
 
@@ -141,6 +142,7 @@ class Wing(Table):
     rib_spacing_mm: Length = 60.0
     ribs: Ribs = Ribs()
     panel: Annotated[tuple[Panel, ...], Field(strict=False, min_length=1)]
+    elliptic: Elliptic | None = Field(None, description="Instead of panels.")
     spar: Annotated[tuple[Spar, ...], Field(strict=False)] = ()
     leading_edge: LeadingEdge = LeadingEdge()
     trailing_edge: TrailingEdge = TrailingEdge()
@@ -152,3 +154,18 @@ class Wing(Table):
     jig: Jig | None = Field(None, description="A cradle that holds each panel on the board.")
     wiring_hole: WiringHole | None = None
     covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
+
+    @model_validator(mode="before")
+    @classmethod
+    def _panels_of_the_ellipse(cls, given: Any) -> Any:
+        """An elliptical wing is as many straight panels; all that follows reads only those."""
+        if not isinstance(given, dict) or "elliptic" not in given:
+            return given
+        if "panel" in given:
+            raise ValueError("give either panel or elliptic, not both")
+        shape = given["elliptic"]
+        try:
+            whole = shape if isinstance(shape, Elliptic) else Elliptic.model_validate(shape)
+        except ValidationError:
+            return {**given, "panel": [{"span_mm": 1.0}]}  # its faults are told by its own field
+        return {**given, "panel": whole.panels()}
