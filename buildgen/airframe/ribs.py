@@ -6,20 +6,24 @@ from collections.abc import Callable, Mapping
 from dataclasses import dataclass, replace
 
 import numpy as np
-from shapely.geometry import Polygon
+from shapely.geometry import Polygon, box
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut, apply, lightening, parts_of
 from buildgen.airframe.members import Member
+from buildgen.airframe.members.spars import SparRun
 from buildgen.airframe.shop import Shop
-from buildgen.airframe.stations import Place, places
+from buildgen.airframe.stations import HALF, Place, places
 from buildgen.airframe.surface import WingShape
-from buildgen.part import Joint, Part
+from buildgen.part import Joint, Part, Plate
 from buildgen.problems import DesignError, Problem
 from buildgen.solid import Array, Pose
 
 STEP = "Wing: ribs on the spars"
 FACE_MM = (0.0, 0.1)
+TOUCH_MM = 0.05
+END_MM = 0.3
+"""A half rib's end is cut square to its sheet, the spar runs past it at an angle."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -57,12 +61,27 @@ def make_ribs(
             f"R{number}L", part.name.replace("right", "left"))
         parts += [left] if left else []
         for member in members:
-            joints += _both_sides(member.joint(blank), member, left)
+            joint = member.joint(blank)
+            if place.why == HALF:
+                joint = _half_joint(joint, member.cut(blank), part)
+            joints += _both_sides(joint, member, left)
         joints += _faces(place, part, left, before)
         before = part
         if place.bay:
             of_bay[place.bay.index] = (*of_bay.get(place.bay.index, ()), part.id)
     return Ribs(tuple(parts), tuple(joints), of_bay)
+
+
+def _half_joint(joint: Joint | None, cut: Cut, part: Part) -> Joint | None:
+    """A half rib meets only what lies before the spar; against that it is glued by its end."""
+    assert isinstance(part.form, Plate)
+    outline = part.form.outline
+    if joint is None or not any(outline.distance(hole) < TOUCH_MM for hole in cut.holes):
+        return None
+    if joint.kind != "strip in notch":
+        return joint
+    return replace(joint, kind="edge to edge", way=None, facing=(-1.0, 0.0, 0.0),
+                   gap_mm=(0.0, joint.gap_mm[1] + END_MM))
 
 
 def _both_sides(joint: Joint | None, member: Member, left: Part | None) -> list[Joint]:
@@ -115,8 +134,11 @@ def _cut_rib(
 ) -> Part:
     faces = (blank, _other_side(blank)) if place.single else (blank,)
     cuts = [m.cut(face) for m in members for face in faces] + list(more)
+    if place.why == HALF:
+        cuts.append(_behind_spar(blank, members))
     outline, circles, marks = apply(blank.outline, cuts)
-    _still_whole(place, outline, blank)
+    if place.why != HALF:
+        _still_whole(place, outline, blank)
     ribs = shop.definition.wing.ribs
     if ribs.lightening.use:
         line = _mean_line(blank.outline)
@@ -131,6 +153,18 @@ def _cut_rib(
         blank.id, f"{place.why}{side}", place.material, nominal, outline, blank.pose, STEP, key,
         circles=circles, grain_deg=0.0, marks=marks,
     )
+
+
+def _behind_spar(blank: Blank, members: tuple[Member, ...]) -> Cut:
+    """All that a half rib leaves out: from the fore face of the first strip spar aft."""
+    runs = [m for m in members if isinstance(m, SparRun) and not m.round]
+    starts = [h.bounds[0] for m in runs for h in m.cut(blank).holes]
+    if not starts:
+        raise DesignError(Problem(
+            "wing.ribs.half", "Half ribs end at a strip or capped spar; there is none here.",
+            'Give [[wing.spar]] kind = "capped" (or "strip"), or half = false.'))
+    x0, y0, x1, y1 = blank.outline.bounds
+    return Cut(holes=(box(min(starts), y0 - 50, x1 + 50, y1 + 50),))
 
 
 def _other_side(blank: Blank) -> Blank:

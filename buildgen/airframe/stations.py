@@ -3,6 +3,7 @@
 from __future__ import annotations
 
 from dataclasses import dataclass
+from itertools import pairwise
 
 import numpy as np
 
@@ -15,6 +16,9 @@ from buildgen.solid import Array
 
 BETWEEN_MM = 1.0
 """Between two ribs, for glue and fingers; common practice, no source."""
+HALF = "half rib"
+LEAST_BAY_MM = 24.0
+"""Narrower bays need no half rib."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -126,4 +130,19 @@ def _filled(
             face = low + k * (high - low) / gaps + plain / 2
             wood = shop.definition.wing.ribs.material
             found.append(Place(panel, face, panel.along, wood, plain, "rib"))
-    return sorted(found, key=lambda p: p.face_mm)
+    found.sort(key=lambda p: p.face_mm)
+    return _halved(shop, panel, found, bays) if shop.definition.wing.ribs.half else found
+
+
+def _halved(shop: Shop, panel: Panel, found: list[Place], bays: list[Bay]) -> list[Place]:
+    """Nose ribs half way between the others, but not in the bay of a motor."""
+    wood = shop.definition.wing.ribs
+    thick = shop.thickness(wood.material, wood.thickness_mm)
+    more = []
+    for near, far in pairwise(found):
+        low, high = near.face_mm, far.face_mm - far.thickness_mm
+        middle = (low + high) / 2
+        if high - low < LEAST_BAY_MM or any(abs(middle - b.s_mm) < 1.0 for b in bays):
+            continue
+        more.append(Place(panel, middle + thick / 2, panel.along, wood.material, thick, HALF))
+    return sorted([*found, *more], key=lambda p: p.face_mm)

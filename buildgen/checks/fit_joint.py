@@ -23,7 +23,7 @@ from buildgen.part import Bend, Formed, Joint, Plate
 from buildgen.solid import Array, Pose, polygons
 
 ON_EDGE = ("stick in notch", "sheet on rib")
-LAID = ("face to face", "edge to edge", "web on cap", *ON_EDGE)
+LAID = ("face to face", "edge to edge", "edge to face", "web on cap", *ON_EDGE)
 """Kinds that glue holds face to face, and kinds that are measured all round: the share of the
 inner part's outline that must lie within the band (a notch holds the floor and most of both
 sides, a hinge line one edge)."""

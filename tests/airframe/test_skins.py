@@ -28,6 +28,11 @@ CASES = {
         "panel": "[[wing.panel]]\nspan_mm = 200\ntip_chord_mm = 120\ndihedral_deg = 7\n"
                  "sweep_mm = 30"},
     "webs alone": {"spar": CAPPED},
+    "half ribs, sheet tips": {
+        "wing": '[wing.ribs]\nhalf = true\n[wing.tip]\nkind = "sheet"\n', "spar": CAPPED},
+    "half ribs under sheeting, block tips": {
+        "wing": SHEETED + '[wing.ribs]\nhalf = true\n[wing.tip]\nkind = "block"\n',
+        "spar": CAPPED, "panel": "tip_chord_mm = 150\nsweep_mm = 12\ndihedral_deg = 3"},
     "braced at the root": {
         "spar": CAPPED + "brace_mm = 45", "panel": "tip_chord_mm = 190\ndihedral_deg = 6"},
     "braced at a break": {
@@ -111,6 +116,11 @@ def test_a_cone_unrolls_to_a_sector() -> None:
     assert np.linalg.norm(b - a, axis=1) == pytest.approx(slant, rel=1e-9)
     turned = np.arccos(np.dot(b[0] - a[0], b[-1] - a[-1]) / slant**2)
     assert turned == pytest.approx(np.pi / 2 * 15 / slant, rel=1e-4)
+
+
+def test_half_ribs_need_a_strip_to_end_at(tmp_path: Path) -> None:
+    with pytest.raises(DesignError, match=r"wing\.ribs\.half"):
+        kit_of(tmp_path, wing="[wing.ribs]\nhalf = true")
 
 
 def test_a_closed_nose_needs_a_strip(tmp_path: Path) -> None:

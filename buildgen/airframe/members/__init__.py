@@ -20,6 +20,7 @@ from buildgen.airframe.members import (
     skins,
     spars,
     tip_fins,
+    tips,
     webs,
     wiring,
 )
@@ -59,6 +60,7 @@ MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ..
     braces.make,
     skins.make,
     tip_fins.make,
+    tips.make,
     wiring.make,
 )
 

@@ -14,7 +14,7 @@ from buildgen.airframe.blank import Blank, Cut, solid_cut
 from buildgen.airframe.members.spars import GLUE_GAP_MM, vector
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.skin import Line, Skin
-from buildgen.airframe.stations import Place, places
+from buildgen.airframe.stations import HALF, Place, places
 from buildgen.airframe.surface import AFT, Panel, WingShape
 from buildgen.form import Formed, Plate
 from buildgen.part import Joint, Part
@@ -265,6 +265,8 @@ def _capstrips(
     number = 0
     for place in places(shop, wing, bays):
         number += 0 if place.single else 1
+        if place.why == HALF:
+            continue
         rib = "R0" if place.single else f"R{number}R"
         fore, aft = _strip_lines(shop, wing, place)
         low, high = _strip_ends(place, given.capstrip_mm)

@@ -14,7 +14,7 @@ from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut
 from buildgen.airframe.members.spars import GLUE_GAP_MM, STEP, SparRun, pieces, vector
 from buildgen.airframe.shop import Shop
-from buildgen.airframe.stations import Place, places
+from buildgen.airframe.stations import HALF, Place, places
 from buildgen.airframe.surface import WingShape
 from buildgen.part import Joint, Part
 from buildgen.solid import Array, Pose
@@ -143,7 +143,7 @@ def _webs(
     first = spar.from_mm
     last = spar.to_mm or wing.half_span_mm
     steps = spar.web_mm
-    own = [r for r in ribs if r.panel in top.run]
+    own = [r for r in ribs if r.panel in top.run and r.why != HALF]
     for number, (near, far) in enumerate(pairwise(own), start=1):
         a, b = _outer_face(near), _inner_face(far)
         middle = (near.panel.start_mm + near.face_mm + far.panel.start_mm + far.face_mm) / 2

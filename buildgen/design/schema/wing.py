@@ -92,6 +92,15 @@ class Sheeting(Table):
     capstrip_mm: Extent = Field(0.0, description="Width of a strip over each rib; 0 for none.")
 
 
+class Tip(Table):
+    """What stands beyond the last rib; it counts in the weight, not in the wing's area."""
+
+    kind: Literal["rib", "sheet", "block"] = Field("rib", description="The last rib is the tip.")
+    length_mm: Length = Field(25.0, description="Beyond the last rib.")
+    thickness_mm: Length = Field(4.0, description="Of a sheet tip.")
+    material: str = "balsa"
+
+
 class WiringHole(Table):
     """A hole in every rib for the harness; large enough for the plug."""
 
@@ -114,6 +123,9 @@ class Ribs(Table):
     thickness_mm: Length = 2.0
     root_material: str | None = Field(None, description="Ribs at the root and at breaks.")
     root_thickness_mm: Length | None = None
+    half: bool = Field(
+        False, description="Nose ribs half way between, from the edge to a strip or capped spar."
+    )
     edges: Literal["smaller", "larger"] = Field(
         "smaller", description="A tapered rib is cut to its smaller or its larger face."
     )
@@ -152,6 +164,7 @@ class Wing(Table):
     )
     tip_fin: TipFin | None = None
     jig: Jig | None = Field(None, description="A cradle that holds each panel on the board.")
+    tip: Tip = Tip()
     wiring_hole: WiringHole | None = None
     covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
 
