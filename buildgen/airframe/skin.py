@@ -1,7 +1,8 @@
 """Skins over the wing: a region of one surface, its sheet as it lies there and flat on the bench.
 
-The solid is what lies between the wing's own surface and the same surface moved inwards by the
-sheet; ribs are cut by all that lies outside that inner surface. The flat outline is the middle of
+The solid is ruled between its sections in both end planes, and ribs are cut by that same solid:
+between them it may differ from the wing's surface, whose own rulings follow the chord, by some
+hundredths of a millimetre. The flat outline is the middle of
 the sheet unrolled between straight rulings, so that its area is that of the sheet in place.
 """
 
@@ -15,12 +16,14 @@ import numpy as np
 from shapely.geometry import Polygon
 
 from buildgen.airframe.surface import AFT, Panel
-from buildgen.solid import Array, Common, Difference, Pose, Ruled, Shape, ring
+from buildgen.solid import Array, Pose, Ruled, Shape, ring
 
 FAR_MM = 200.0
 ROWS = 48
 """Rulings from the fore to the aft edge: 0.01 mm of a nose skin's arc, measured."""
 BESIDE_MM = 4.0
+SEAM_MM = 0.04
+"""Between a sheet and the mean line, for the glue that joins it to the other one."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -50,18 +53,32 @@ class Skin:
 
     @cached_property
     def shape(self) -> Shape:
-        """The sheet as it lies on the wing."""
-        return Difference(Common((self._half, self._between)), (self._below,))
+        """The sheet as it lies on the wing, down to the mean line where it is thinner there."""
+        rings = []
+        for pose in (self.inner, self.outer):
+            over, under = self._row(pose, 0.0), self._row(pose, self.thick_mm, True)[::-1]
+            rings.append(ring((over, True), (np.vstack([over[-1:], under[:1]]), False),
+                              (under, True), (np.vstack([under[-1:], over[:1]]), False)))
+        return Ruled(*rings)
 
     @cached_property
     def cutter(self) -> Shape:
-        """All that the sheet takes from a rib: from its inner surface outwards."""
-        return Difference(self._between, (self._below,))
+        """All that the sheet takes from a rib: from its own inner surface outwards, and past
+        both end planes."""
+        rows = [self._row(pose, self.thick_mm, True) for pose in (self.inner, self.outer)]
+        run = rows[1] - rows[0]
+        share = BESIDE_MM / float(np.linalg.norm(run, axis=1).min())
+        out = self.panel.up * (FAR_MM if self.upper else -FAR_MM)
+        rings = []
+        for row in (rows[0] - share * run, rows[1] + share * run):
+            lid = np.vstack([row[-1:], row[-1:] + out, row[:1] + out, row[:1]])
+            rings.append(ring((row, True), (lid, False)))
+        return Ruled(*rings)
 
     @cached_property
     def flat(self) -> Polygon:
         """The sheet unrolled: x along the span, y from its fore edge aft."""
-        rows = [self._row(pose) for pose in (self.inner, self.outer)]
+        rows = [self._row(pose, self.thick_mm / 2) for pose in (self.inner, self.outer)]
         near, far = unrolled(*rows)
         return Polygon(np.vstack([near, far[::-1]]))
 
@@ -72,56 +89,6 @@ class Skin:
         points = self.panel.ring(pose)
         middle = (len(points) - 1) // 2
         return points[middle::-1] if self.upper else points[middle:]
-
-    @property
-    def _half(self) -> Ruled:
-        """The upper or lower half of the wing: from the mean line to the surface."""
-        rings = []
-        for pose in (self.inner, self.outer):
-            points = self.panel.ring(pose)
-            middle = (len(points) - 1) // 2
-            mean = (points[middle::-1] + points[middle:]) / 2
-            own = self._curve(pose)
-            rings.append(ring((own[::-1], True), (mean, True),
-                              (np.vstack([mean[-1:], own[-1:]]), False)))
-        return Ruled(*rings)
-
-    @property
-    def _between(self) -> Ruled:
-        """Everything between the two lines, from the mean line far out; past both end planes."""
-        rings = []
-        for share in self._shares:
-            nose = self.panel.nose(share * self.panel.length_mm)
-            low, high = (-FAR_MM, FAR_MM)
-            corners = [(self.fore.at(share), low), (self.aft.at(share), low),
-                       (self.aft.at(share), high), (self.fore.at(share), high)]
-            points = np.array([nose + x * AFT + y * self.panel.up for x, y in corners])
-            rings.append(points)
-        closed = [ring((np.vstack([p, p[:1]]), False)) for p in rings]
-        return Ruled(*closed)
-
-    @property
-    def _shares(self) -> tuple[float, float]:
-        """Shares of the panel's length just outside both end planes."""
-        along = [(self._curve(pose) - self.panel.root.nose) @ self.panel.along
-                 for pose in (self.inner, self.outer)]
-        low, high = float(along[0].min()), float(along[1].max())
-        return (low - BESIDE_MM) / self.panel.length_mm, (high + BESIDE_MM) / self.panel.length_mm
-
-    @property
-    def _below(self) -> Ruled:
-        """Everything inside the sheet's inner surface, beyond all edges."""
-        curves = [self._inset(pose, self.thick_mm) for pose in (self.inner, self.outer)]
-        share = 2 * BESIDE_MM / max(1.0, float(np.linalg.norm(curves[1] - curves[0], axis=1).min()))
-        run = curves[1] - curves[0]
-        curves = [curves[0] - share * run, curves[1] + share * run]
-        down = self.panel.up * (-3 * FAR_MM if self.upper else 3 * FAR_MM)
-        rings = []
-        for points in curves:
-            fore, aft = points[0] - FAR_MM * AFT, points[-1] + FAR_MM * AFT
-            box = np.vstack([points[-1:], aft, aft + down, fore + down, fore, points[:1]])
-            rings.append(ring((points, True), (box, False)))
-        return Ruled(*rings)
 
     def _inset(self, pose: Pose, depth_mm: float) -> Array:
         """(m, 3) this surface moved inwards, from ahead of the fore line to the tail."""
@@ -151,19 +118,31 @@ class Skin:
 
     # ------------------------------------------------------------ on the bench
 
-    def _row(self, pose: Pose) -> Array:
-        """(ROWS, 3) the middle of the sheet in an end plane, fore to aft edge."""
-        outer = self._curve(pose)[self._first:]
-        middle = self._inset(pose, self.thick_mm / 2)
+    def _row(self, pose: Pose, depth_mm: float, to_mean: bool = False) -> Array:
+        """(ROWS, 3) so deep under the surface in an end plane, from the fore to the aft line."""
+        points = self._inset(pose, depth_mm)
+        if to_mean:
+            points = self._above_mean(pose, points)
         ends = []
         for line in (self.fore, self.aft):
-            behind = self._ahead(outer, line)
+            behind = self._ahead(points, line)
             k = int(np.clip(np.argmax(behind > 0), 1, len(behind) - 1)) if (
                 behind[-1] > 0) else len(behind) - 1
             ends.append(k - 1 + float(np.clip(-behind[k - 1] / (behind[k] - behind[k - 1]), 0, 1)))
-        places = np.interp(np.linspace(0, 1, ROWS), (0, 1), ends)
-        index = np.arange(len(middle))
-        return np.column_stack([np.interp(places, index, middle[:, c]) for c in range(3)])
+        places = np.linspace(ends[0], ends[1], ROWS)
+        index = np.arange(len(points))
+        return np.column_stack([np.interp(places, index, points[:, c]) for c in range(3)])
+
+    def _above_mean(self, pose: Pose, points: Array) -> Array:
+        """Points (n, 3) no further in than the mean line: there the other sheet begins."""
+        whole = pose.local(self.panel.ring(pose))[:, :2]
+        middle = (len(whole) - 1) // 2
+        mean = (whole[middle::-1] + whole[middle:]) / 2
+        flat = pose.local(points)
+        level = np.interp(flat[:, 0], mean[:, 0], mean[:, 1])
+        level += SEAM_MM if self.upper else -SEAM_MM
+        limit = np.maximum if self.upper else np.minimum
+        return pose(np.column_stack([flat[:, 0], limit(flat[:, 1], level), flat[:, 2]]))
 
 
 def unrolled(near: Array, far: Array) -> tuple[Array, Array]:

@@ -15,21 +15,20 @@ from itertools import pairwise
 
 import numpy as np
 import shapely
-from manifold3d import Manifold
+from manifold3d import Manifold, OpType
 from shapely.affinity import translate
 from shapely.geometry import Polygon
 
 from buildgen.airframe.blank import parts_of
 from buildgen.checks.fit_space import CLASH_MM3, Clash, Solid, box_of, cropped, point, shared
-from buildgen.part import Joint, Kit, Plate, Printed, Stick
+from buildgen.part import Allowance, Cover, Joint, Kit, Plate, Printed, Stick
 from buildgen.solid import (
     Array,
-    Common,
-    Difference,
     Mirrored,
     Placed,
     Prism,
     Rod,
+    Ruled,
     Shape,
     Union,
     mesh,
@@ -41,6 +40,8 @@ EVERY_MM = 4.0
 """Where a print or a bent sheet is looked at on its way: finer near its seat, then at every 4 mm,
 less than any tongue is long."""
 IN_PLANE = 1e-3
+STRAIGHT = 1.05
+"""A bar shaped to the section, a little hollow, still counts as the hull of its ends."""
 
 
 @dataclass(frozen=True, slots=True)
@@ -152,6 +153,12 @@ def _length(thing: Solid, out: Array, others: Sequence[Solid]) -> float:
 def _swept(thing: Solid, out: Array, length: float) -> Iterator[Manifold]:
     """What the part covers on its way out, in one solid or in steps."""
     form = thing.part.form
+    assert not isinstance(form, Allowance | Cover)
+    if slices := _slices(form.shape):
+        points = [thing.part.pose(s) for s in slices]
+        yield Manifold.batch_boolean(
+            [Manifold.hull_points(np.vstack([p, p + out * length])) for p in points], OpType.Add)
+        return
     if isinstance(form, Stick | Printed) and _in_one(thing, out):
         for piece in _bars(form.shape):
             solid = mesh(Placed(piece, thing.part.pose))
@@ -169,25 +176,41 @@ def _swept(thing: Solid, out: Array, length: float) -> Iterator[Manifold]:
 
 
 def _in_one(thing: Solid, out: Array) -> bool:
-    """What it sweeps is known in one solid: bars, and flat plates carried in their plane."""
+    """What it sweeps is known in one solid: bars, bent sheets, plates carried in their plane."""
     form = thing.part.form
-    if isinstance(form, Stick) and not _hollowed(form.shape):
+    if isinstance(form, Allowance | Cover):
+        return False
+    if _slices(form.shape) or (isinstance(form, Stick) and _straight(form.shape)):
         return True
     if isinstance(form, Printed) and isinstance(form.shape, Rod):
         return True
     return thing.slab is not None and abs(float(thing.slab[0].rotation[:, 2] @ out)) < IN_PLANE
 
 
-def _hollowed(shape: Shape) -> bool:
-    """Something is taken from it, so that it is not the hull of its corners."""
+def _straight(shape: Shape) -> bool:
+    """Each of its bars is the hull of its corners: not a strip bent over a rib."""
+    for bar in _bars(shape):
+        solid = mesh(bar)
+        if float(solid.hull().volume()) > STRAIGHT * float(solid.volume()):
+            return isinstance(bar, Rod)
+    return True
+
+
+def _slices(shape: Shape | None) -> list[Array]:
+    """A sheet bent over a surface in flat slices, corners (8, 3) of each; none of other shapes."""
     match shape:
-        case Difference():
-            return True
-        case Placed() | Mirrored():
-            return _hollowed(shape.shape)
-        case Union() | Common():
-            return any(_hollowed(s) for s in shape.shapes)
-    return False
+        case Placed():
+            return [shape.pose(s) for s in _slices(shape.shape)]
+        case Mirrored():
+            flip = np.ones(3)
+            flip[shape.axis] = -1
+            return [s * flip for s in _slices(shape.shape)]
+        case Ruled(first=(over, _, under, _)) if over.smooth and under.smooth:
+            rows = [(over.points, under.points[::-1]),
+                    (shape.last[0].points, shape.last[2].points[::-1])]
+            return [np.vstack([side[k : k + 2] for pair in rows for side in pair])
+                    for k in range(len(over.points) - 1)]
+    return []
 
 
 def _bars(shape: Shape) -> list[Shape]:

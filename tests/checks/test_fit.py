@@ -284,7 +284,7 @@ def test_checks_tell_the_worst(marram: Build) -> None:
 
 
 def test_the_same_kit_gives_the_same_findings(sedge: Build) -> None:
-    bad = changed(sedge, "SR1a", lambda p: replace(p, pose=Pose(origin=np.array([0, 0, 1.0]))))
+    bad = changed(sedge, "SR1at", lambda p: replace(p, pose=Pose(origin=np.array([0, 0, -1.0]))))
     one, two = (fit_of(bad) for _ in range(2))
     assert one.findings == two.findings != ()
 

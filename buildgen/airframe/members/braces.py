@@ -78,7 +78,10 @@ class Brace:
         _, _, axes = np.linalg.svd(ring - middle)
         x = axes[0] if axes[0][1] > 0 else -axes[0]
         aft = np.cross(x, (0.0, 0.0, 1.0))
-        return Pose.at(middle + PLAY_MM * aft / np.linalg.norm(aft), x, (0.0, 0.0, 1.0))
+        aft /= np.linalg.norm(aft)
+        # Clear of the web that stands furthest aft: on swept spars they are not quite in line.
+        clear = float(((ring - middle) @ aft).max()) + PLAY_MM
+        return Pose.at(middle + clear * aft, x, (0.0, 0.0, 1.0))
 
     @property
     def _thick_mm(self) -> float:
@@ -137,6 +140,9 @@ class Brace:
         inwards = float((middle - first.meet) @ first.run[0].inner_normal) < 0
         caps = self.inner if self.inner is not None and inwards else self.outer
         way = caps[0].bar.axis * (-1 if inwards else 1)
+        normal = self.frame.rotation[:, 2]
+        way = way - normal * float(way @ normal)
+        way /= np.linalg.norm(way)
         axis = blank.pose.rotation.T @ way
         wander = blank.thickness_mm * float(np.hypot(axis[0], axis[1])) / abs(float(axis[2]))
         return Joint("brace in slot", self.parts[0].id, blank.id,

@@ -251,7 +251,8 @@ def _piece(
         b = _onto(b, way, run[-1].end_plane(True))
     short_a = 0.0 if through or low > start else _setback(spar, run[0].inner_normal, way)
     last = run[-1].index == len(wing.panels) - 1
-    short_b = 0.0 if last or high < end else _setback(spar, run[-1].outer_normal, way)
+    open_end = last and shop.definition.wing.tip.kind == "rib"
+    short_b = 0.0 if open_end or high < end else _setback(spar, run[-1].outer_normal, way)
     piece = SparRun(
         shop, number, spar, run, a + short_a * way, b - short_b * way, through, index, meet=a
     )
