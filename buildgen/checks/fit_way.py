@@ -190,9 +190,14 @@ def _in_one(thing: Solid, out: Array) -> bool:
 def _straight(shape: Shape) -> bool:
     """Each of its bars is the hull of its corners: not a strip bent over a rib."""
     for bar in _bars(shape):
+        inner = bar
+        while isinstance(inner, Placed | Mirrored):
+            inner = inner.shape
+        if isinstance(inner, Rod):
+            continue
         solid = mesh(bar)
         if float(solid.hull().volume()) > STRAIGHT * float(solid.volume()):
-            return isinstance(bar, Rod)
+            return False
     return True
 
 

@@ -8,11 +8,25 @@ from dataclasses import dataclass
 from pathlib import Path
 from typing import Any
 
-from buildgen.part import Part, Plate
+import numpy as np
+
+from buildgen.part import Part, Plate, Printed
 from buildgen.prints.brep import brep, kernel
 from buildgen.prints.make import fixed_header, placed
-from buildgen.solid import Mirrored, Placed, Prism, Shape, Surface, Union
+from buildgen.solid import (
+    Common,
+    Difference,
+    Mirrored,
+    Placed,
+    Prism,
+    Ruled,
+    Run,
+    Shape,
+    Surface,
+    Union,
+)
 
+CURVE_POINTS = 21
 CURVE_MM = 0.02
 """Outlines of plates are thinned this closely: the cut sheets carry the fine ones."""
 
@@ -36,8 +50,33 @@ def pieces_of(parts: Iterable[Part]) -> list[Piece]:
             plate = part.form
             thin = plate.outline.simplify(CURVE_MM)
             shape = Placed(Prism(thin, plate.thickness_mm, plate.circles), part.pose)
+        elif not isinstance(part.form, Printed):
+            shape = thinned(shape)
         found.append(Piece(part.id, shape))
     return found
+
+
+def thinned(shape: Shape) -> Shape:
+    """The recipe with its curves given by fewer points: splines run through them all the same."""
+    match shape:
+        case Placed():
+            return Placed(thinned(shape.shape), shape.pose)
+        case Mirrored():
+            return Mirrored(thinned(shape.shape), shape.axis)
+        case Common():
+            return Common(tuple(thinned(s) for s in shape.shapes))
+        case Difference():
+            return Difference(thinned(shape.body), tuple(thinned(t) for t in shape.tools))
+        case Ruled():
+            return Ruled(*(tuple(_few(run) for run in runs) for runs in (shape.first, shape.last)))
+    return shape
+
+
+def _few(run: Run) -> Run:
+    if not run.smooth or len(run.points) <= CURVE_POINTS:
+        return run
+    keep = np.unique(np.linspace(0, len(run.points) - 1, CURVE_POINTS).round().astype(int))
+    return Run(run.points[keep], True)
 
 
 def assembly_text(name: str, pieces: Iterable[Piece], built: dict[int, Any]) -> str:

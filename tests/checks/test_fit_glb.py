@@ -81,7 +81,7 @@ def test_no_two_parts_of_the_written_model_share_space(kit: Build) -> None:
 
 def test_the_second_opinion_sees_a_part_out_of_place(sedge: Build) -> None:
     solids, _ = closed_meshes(glb(sedge))
-    solids["SR1a"] = solids["SR1a"].translate((0.0, 1.5, 0.0))
+    solids["SR1at"] = solids["SR1at"].translate((0.0, 0.0, -1.5))
     named = {name: s for name, s in solids.items() if name.startswith(("SR", "R"))}
     _, found = overlaps(named)
-    assert {one if two == "SR1a" else two for one, two, _ in found} >= {"R2R", "R5R", "R9R"}
+    assert {one if two == "SR1at" else two for one, two, _ in found} >= {"R2R", "R5R", "R9R"}
