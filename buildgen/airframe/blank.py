@@ -87,13 +87,25 @@ def _meets(bar: Bar, blank: Blank, z: float) -> Array | None:
     if abs(run) < 1e-9:
         return None
     share = (z - a[2]) / run
-    slack = 1.001 * blank.thickness_mm / abs(run)
+    beyond = _corner_mm(bar, blank)
+    slack = (1.001 * blank.thickness_mm + beyond) / abs(run)
     if share < -slack or share > 1 + slack:
         return None
     low, high = sorted((a[2], b[2]))
-    if high <= 1e-6 or low >= blank.thickness_mm - 1e-6:
+    if high + beyond <= 1e-6 or low - beyond >= blank.thickness_mm - 1e-6:
         return None
     return np.asarray((a + share * (b - a))[:2])
+
+
+def _corner_mm(bar: Bar, blank: Blank) -> float:
+    """How far the corners of its square ends reach past the axis, across the blank's plane."""
+    normal = blank.pose.rotation[:, 2]
+    if bar.radius_mm > 0:
+        return bar.radius_mm * float(np.sqrt(max(0.0, 1 - float(bar.axis @ normal) ** 2)))
+    wide = float(np.abs(bar.section[:, 0]).max()) * abs(float(bar.x @ normal))
+    # A notch's section is drawn out through the surface; the bar has its lesser height.
+    tall = min(-float(bar.section[:, 1].min()), float(bar.section[:, 1].max()))
+    return wide + max(tall, 0.0) * abs(float(bar.y @ normal))
 
 
 def _project(bar: Bar, blank: Blank, z: float) -> Array:

@@ -23,6 +23,13 @@ CASES = {
     "box spar, swept, washed out": {
         "wing": SHEETED + CLOSED_TAIL, "spar": CAPPED + 'web = "both"\nat_tip_chord = 0.33',
         "panel": "tip_chord_mm = 130\ndihedral_deg = 6\ntwist_deg = -3\nsweep_mm = 60"},
+    "box spar, swept, level": {
+        "spar": CAPPED + 'web = "both"', "panel": "tip_chord_mm = 155\nsweep_mm = 90"},
+    "tube straightened in the middle": {
+        "spar": "outer_mm = 10\ninner_mm = 8\nat_chord = 0.28\n[[wing.spar]]\nouter_mm = 5\n"
+                "inner_mm = 3\nat_chord = 0.6",
+        "panel": "tip_chord_mm = 145\nsweep_mm = 27\n[[wing.panel]]\nspan_mm = 180\n"
+                 "tip_chord_mm = 130\nsweep_mm = 18\ndihedral_deg = 5"},
     "polyhedral, webs aft": {
         "wing": SHEETED, "spar": CAPPED,
         "panel": "[[wing.panel]]\nspan_mm = 200\ntip_chord_mm = 120\ndihedral_deg = 7\n"

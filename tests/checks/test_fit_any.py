@@ -55,11 +55,18 @@ SPARS = (
     "height_mm = 3\nplace = \"bottom\"",
     "[[wing.spar]]\nouter_mm = 10\ninner_mm = 8\nat_chord = 0.28\n[[wing.spar]]\nouter_mm = 5\n"
     "inner_mm = 3\nat_chord = 0.6",
+    "[[wing.spar]]\nkind = \"capped\"\nmaterial = \"spruce\"\nwidth_mm = 6\nheight_mm = 3\n"
+    "web_mm = [2, 1.5]\nto_mm = 460",
+    "[[wing.spar]]\nkind = \"capped\"\nmaterial = \"spruce\"\nwidth_mm = 8\nheight_mm = 3\n"
+    "web = \"both\"\nat_tip_chord = 0.33",
 )
+STRIP = "[wing.leading_edge]\nkind = \"strip\"\nsize_mm = 6\n"
 EDGES = (
     "", "[wing.leading_edge]\nkind = \"round\"\nmaterial = \"dowel\"\nsize_mm = 6",
     "[wing.leading_edge]\nsize_mm = 8\n[wing.trailing_edge]\nwidth_mm = 30",
-    "[wing.trailing_edge]\nkind = \"none\"",
+    "[wing.trailing_edge]\nkind = \"none\"", STRIP,
+    STRIP + "[wing.sheeting]\n[wing.trailing_edge]\nkind = \"sheet\"\nwidth_mm = 28",
+    STRIP + "[wing.sheeting]\ncapstrip_mm = 8",
 )
 MOTOR = 'motor = { mass_g = 24, pattern = "16x16" }\n' \
         'propeller = { diameter_mm = 127, pitch_mm = 76 }'

@@ -181,11 +181,13 @@ def pieces(shop: Shop, wing: WingShape) -> Iterable[tuple[Spar, list[SparRun]]]:
     for number, spar in enumerate(shop.definition.wing.spar, start=1):
         _check(spar, number, shop)
         for stick, cap in sticks(spar):
-            yield stick, [
-                replace(piece, cap=cap)
-                for i, run in enumerate(wing.runs)
-                if (piece := _piece(shop, wing, stick, number, run, i)) is not None
-            ]
+            found: list[SparRun] = []
+            for i, run in enumerate(wing.runs):
+                before = found[-1] if found else None
+                piece = _piece(shop, wing, stick, number, run, i, before)
+                if piece is not None:
+                    found.append(replace(piece, cap=cap))
+            yield stick, found
 
 
 def sticks(spar: Spar) -> Iterable[tuple[Spar, str]]:
@@ -223,14 +225,14 @@ def _check(spar: Spar, number: int, shop: Shop) -> None:
 
 
 def _piece(
-    shop: Shop, wing: WingShape, spar: Spar, number: int, run: tuple[Panel, ...], index: int
+    shop: Shop, wing: WingShape, spar: Spar, number: int, run: tuple[Panel, ...], index: int,
+    before: SparRun | None,
 ) -> SparRun | None:
     start, end = run[0].start_mm, run[-1].start_mm + run[-1].length_mm
     low, high = max(start, spar.from_mm), min(end, spar.to_mm or wing.half_span_mm)
     if high - low < 1.0:
         return None
-    sheeting = shop.definition.wing.sheeting
-    under = shop.thickness(sheeting.material, sheeting.thickness_mm) if sheeting else 0.0
+    under = _sheet_over(shop, spar)
     a, b = (_place(wing, spar, s, run, under) for s in (low, high))
     if under and spar.place != "middle":
         under += UNDER_MM
@@ -244,6 +246,9 @@ def _piece(
     through = index == 0 and low == 0 and wing.flat_centre and _in_line(a, b, most)
     if through:
         a, b = _straightened(a, b)
+    if before is not None and before.through and before.round:
+        # The piece in the middle was straightened: this one goes on where it really ends.
+        a = _onto(before.b, before.bar.axis, run[0].end_plane(False))
     way = (b - a) / np.linalg.norm(b - a)
     if low == start and not through:
         a = _onto(a, way, run[0].end_plane(False))
@@ -256,8 +261,19 @@ def _piece(
     piece = SparRun(
         shop, number, spar, run, a + short_a * way, b - short_b * way, through, index, meet=a
     )
-    _stays_inside(piece, wing, low, high)
+    _stays_inside(piece, wing, low, high, under)
     return piece
+
+
+def _sheet_over(shop: Shop, spar: Spar) -> float:
+    """Thickness of the sheeting or capstrips that a spar lies under; 0 where there are none."""
+    wing = shop.definition.wing
+    given = wing.sheeting
+    if given is None:
+        return 0.0
+    back = given.to_chord if given.to_chord is not None else wing.spar[0].at_chord
+    over = given.capstrip_mm > 0 or (given.nose and spar.at_chord <= back)
+    return shop.thickness(given.material, given.thickness_mm) if over else 0.0
 
 
 def _in_line(a: Array, b: Array, most_mm: float) -> bool:
@@ -314,8 +330,10 @@ def _place(
     return point - depth * panel.up * (1 if spar.place == "top" else -1)
 
 
-def _stays_inside(piece: SparRun, wing: WingShape, low: float, high: float) -> None:
-    """Depth check at stations along the spar: it must lie in the section everywhere."""
+def _stays_inside(
+    piece: SparRun, wing: WingShape, low: float, high: float, under_mm: float
+) -> None:
+    """Depth check at stations along the spar: it must lie in the section, under any sheet."""
     spar = piece.spar
     size = spar.outer_mm if piece.round else spar.height_mm
     for share in np.linspace(0.0, 1.0, 9):
@@ -324,13 +342,13 @@ def _stays_inside(piece: SparRun, wing: WingShape, low: float, high: float) -> N
         pose = panel.plane(span - panel.start_mm)
         outline = panel.outline(pose)
         spot = pose.local(piece.a + share * (piece.b - piece.a))[:2]
-        ring = Point(*spot).buffer((size or 0.0) / 2) if piece.round else Point(*spot)
+        ring = Point(*spot).buffer((size or 0.0) / 2 + under_mm) if piece.round else Point(*spot)
         if not outline.contains(ring):
             raise DesignError(
                 Problem(
                     f"{piece.key}.at_chord",
                     f"At {span:.0f} mm from the centre the {spar.kind} of {size:g} mm"
-                    f" does not lie inside the section.",
+                    f" does not lie inside the section{' and its sheeting' * bool(under_mm)}.",
                     "Move it towards the thickest point, make it thinner or end it with to_mm.",
                 )
             )
