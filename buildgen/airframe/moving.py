@@ -10,7 +10,10 @@ from collections.abc import Iterator
 from dataclasses import dataclass, replace
 from functools import cached_property
 
+import numpy as np
+
 from buildgen.airframe.hinge import HingeLine, Horn, horn_at
+from buildgen.airframe.moving_faults import TORQUE_ARM_MM, not_together, place_faults
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import AFT, Panel, WingShape
 from buildgen.design.schema import Control
@@ -24,8 +27,8 @@ BORDER_MM = 8.0
 """Of the plate round a servo's opening, along the span."""
 BELOW_MM = 5.0
 """How far a servo's arm reaches out of the skin at rest."""
-BEHIND_NOSE_MM = 12.0
-"""For the horn's wood between the nose and the edge of a built-up surface."""
+LEG_AT_MM = 10.0
+"""Outboard of the surface's inner end, where a torque rod bends into it."""
 SHORT_MM = 10.0
 """A shorter piece of trailing edge is left to the rib itself."""
 HORN_MM = 10.0
@@ -129,19 +132,37 @@ class ControlPlace:
         """Along the panel: the plane in which servo arm, pushrod and horn lie."""
         if self.servo_bay_mm is not None and self.servo is not None:
             return self.servo_bay_mm[0] + BORDER_MM + self.servo.height_mm + ARM_MM / 2
+        if self.given.drive == "torque-rod":
+            return TORQUE_ARM_MM[0]
         return self.ends_mm[0] + 25.0
+
+    def axis_point(self, s_mm: float) -> Array:
+        """On the hinge line, extended, at a distance along the panel."""
+        line = self.line
+        along = (self.panel.root.nose + s_mm * self.panel.along - line.start) @ self.panel.along
+        return np.asarray(
+            line.start + line.axis * float(along) / float(line.axis @ self.panel.along))
+
+    @property
+    def torque_leg(self) -> tuple[Array, Array]:
+        """Where a torque rod bends aft into the surface, and where it ends in it."""
+        bend = self.axis_point(self.ends_mm[0] + LEG_AT_MM)
+        deep = self.given.nose_mm - 1.0 if self.given.kind == "built-up" else 18.0
+        return bend, bend + deep * self.line.frame(0.0).rotation[:, 0]
 
     @cached_property
     def horn(self) -> Horn | None:
-        """Its horn, starboard; a torque rod needs none."""
-        if self.given.drive == "torque-rod":
-            return None
+        """Its horn, starboard; that of a torque rod is its arm at the root."""
         along = (self.panel.plane(self.arm_s_mm).origin - self.line.start) @ self.panel.along
         s = float(along) / float(self.line.axis @ self.panel.along)
         up = self.given.horn_side == "up"
         deep = self.depth_mm(self.arm_s_mm)[0 if up else 1]
         radius = self.given.horn_mm or round(deep + HORN_MM, 1)
         n = self.number
+        if self.given.drive == "torque-rod":
+            return horn_at(self.line, s, self.given.horn_mm or TORQUE_ARM_MM[1],
+                           "up" if up else "down", self.throw_deg, f"AY{n}R", f"AY{n}R",
+                           f"{self.given.name}, right", self.key)
         part = f"AN{n}R" if self.given.kind == "built-up" else f"AS{n}R"
         horn = horn_at(self.line, s, radius, "up" if up else "down", self.throw_deg, f"AP{n}R",
                        part, f"{self.given.name}, right", self.key)
@@ -153,7 +174,8 @@ class ControlPlace:
         if self.horn is None:
             return ()
         n = self.number
-        other = self.horn.mirrored(f"AP{n}L", self.horn.part[:-1] + "L", f"{self.given.name}, left",
+        id, part = (f"{name[:-1]}L" for name in (self.horn.id, self.horn.part))
+        other = self.horn.mirrored(id, part, f"{self.given.name}, left",
                                    f"AV{n}L" if self.servo else "")
         return self.horn, other
 
@@ -184,29 +206,14 @@ def control_places(shop: Shop, wing: WingShape) -> tuple[ControlPlace, ...]:
     """
     found: list[ControlPlace] = []
     problems: list[Problem] = []
-    problems += _not_together(shop)
+    problems += not_together(shop)
     for n, given in enumerate(shop.definition.wing.control, start=1):
         place = _place(shop, wing, n, given)
-        problems += _faults(place, wing, found)
+        problems += place_faults(place, found)
         found.append(place)
     if problems:
         raise DesignError(*problems)
     return tuple(found)
-
-
-def _not_together(shop: Shop) -> Iterator[Problem]:
-    """What no surface can hang behind as yet."""
-    wing = shop.definition.wing
-    if not wing.control:
-        return
-    if wing.trailing_edge.kind == "sheet":
-        yield Problem("wing.trailing_edge.kind",
-                      "A sheeted trailing edge does not stop at moving surfaces.",
-                      'Take "stock" or "none" on a wing with wing.control.')
-    if wing.sheeting is not None and wing.sheeting.capstrip_mm:
-        yield Problem("wing.sheeting.capstrip_mm",
-                      "Capstrips do not stop at moving surfaces.",
-                      "Take 0 on a wing with wing.control.")
 
 
 def _place(shop: Shop, wing: WingShape, number: int, given: Control) -> ControlPlace:
@@ -218,52 +225,6 @@ def _place(shop: Shop, wing: WingShape, number: int, given: Control) -> ControlP
     high = tip if given.to_mm is None else given.to_mm - panel.start_mm
     at_tip = last and high > tip - 3 * rib
     return ControlPlace(shop, number, given, panel, (low, tip if at_tip else high), at_tip)
-
-
-def _faults(
-    place: ControlPlace, wing: WingShape, others: list[ControlPlace]
-) -> Iterator[Problem]:
-    given, panel = place.given, place.panel
-    ribs = place.shop.definition.wing.ribs
-    end = place.shop.thickness(ribs.root_material or ribs.material,
-                               ribs.root_thickness_mm or ribs.thickness_mm)
-    margin = place.rib_mm + given.end_gap_mm + end + 2
-    low, high = place.ends_mm
-    ends = panel.start_mm + margin, panel.start_mm + panel.length_mm - margin
-    where = f"The {given.name} from {panel.start_mm + low:.0f} to {panel.start_mm + high:.0f} mm"
-    if low < margin or (high > panel.length_mm - margin and not place.at_tip):
-        yield Problem(
-            f"{place.key}.from_mm" if low < margin else f"{place.key}.to_mm",
-            f"{where} reaches over the end of panel {panel.index + 1}.",
-            f"In this panel it may lie between {ends[0]:.0f} and {ends[1]:.0f} mm; give each panel"
-            " its own surface.",
-        )
-    for other in others:
-        gap = 2 * place.rib_mm + 2
-        if other.panel is panel and low < other.bay_mm[1] + gap and high > other.bay_mm[0] - gap:
-            yield Problem(f"{place.key}.from_mm",
-                          f"{where} runs into the {other.given.name} ({other.key}).",
-                          f"Leave {gap + 2 * given.end_gap_mm:.0f} mm between them for two ribs.")
-    if given.kind == "built-up":
-        widths = [panel.chord(s) * (1 - place.fraction(s)) for s in place.ends_mm]
-        least = given.nose_mm + given.edge_mm + BEHIND_NOSE_MM
-        if min(widths) < least:
-            yield Problem(
-                f"{place.key}.chord",
-                f"The {given.name} is {min(widths):.0f} mm wide at its narrow end: nose, horn and"
-                f" edge need {least:.0f} mm.",
-                'Make it wider, edge_mm or nose_mm less, or take kind = "strip".')
-    if given.drive == "servo" and given.horn_side == "up":
-        yield Problem(f"{place.key}.horn_side",
-                      "The servo's arm comes out below the wing, the horn stands above it.",
-                      'Take horn_side = "down", or drive = "none".')
-    bay = place.servo_bay_mm
-    if bay is not None and (bay[0] < low + 8 or bay[1] > high - 8):
-        least, most = (panel.start_mm + low + 8 + (bay[1] - bay[0]) / 2,
-                       panel.start_mm + high - 8 - (bay[1] - bay[0]) / 2)
-        yield Problem(f"{place.key}.servo.at_mm",
-                      f"The servo's bay does not lie ahead of the {given.name}.",
-                      f"Place it between {least:.0f} and {most:.0f} mm.")
 
 
 def lead_reach_mm(shop: Shop, wing: WingShape) -> float:

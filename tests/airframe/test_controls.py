@@ -40,6 +40,8 @@ KINDS = {
     "built-up": BUILT_UP,
     "strip": 'kind = "strip"\nfrom_mm = 130\nto_mm = 380\nwidth_mm = 38\nhinge = "top"',
     "block": 'kind = "block"\nfrom_mm = 130\nhinges = "tape"\ndown_deg = 25',
+    "torque rod": BUILT_UP + '\ndrive = "torque-rod"',
+    "torque rod, strip": 'kind = "strip"\nfrom_mm = 130\nwidth_mm = 32\ndrive = "torque-rod"',
     "from elsewhere": 'kind = "block"\nfrom_mm = 130\nhorn_side = "up"\ndrive = "none"',
 }
 
@@ -110,6 +112,8 @@ def test_both_sides_are_mirror_images(made):
      "wing.control[2].from_mm"),
     ("from_mm = 130\nchord = 0.1", "wing.control[1].chord"),
     ("from_mm = 130\nservo = { at_mm = 100 }", "wing.control[1].servo.at_mm"),
+    ('from_mm = 130\nwidth_mm = 20\nkind = "strip"\ndrive = "torque-rod"',
+     "wing.control[1].drive"),
     ('from_mm = 130\nhorn_side = "up"', "wing.control[1].horn_side"),
     ("from_mm = 130\nservo = { kind = \"mikro\" }", "wing.control[1].servo.kind"),
 ])
@@ -120,6 +124,20 @@ def test_faults_name_their_key(control, key):
 
 
 # ---------------------------------------------------------------- servos
+
+
+def test_a_torque_rod_turns_about_the_hinge_line():
+    """Its long run lies on the hinge line, its arm and its leg stand square to it."""
+    kit = wing(KINDS["torque rod"])
+    place = control_places(kit.frame.shop, kit.frame.wing)[0]
+    rod, line = kit.by_id["AY1R"], place.line
+    horn = next(h for h in kit.frame.horns if h.id == "AY1R")
+    assert abs((horn.pivot_mm - horn.hinge_mm) @ line.axis) < 1e-9
+    away = np.cross(horn.hinge_mm - line.start, line.axis)
+    assert np.linalg.norm(away) < 1e-9
+    assert [angle for _, angle in rod.form.bends] == [90.0, 90.0]
+    run = np.linalg.norm(place.torque_leg[0] - horn.hinge_mm)
+    assert rod.form.length_mm == pytest.approx(22 + run + place.given.nose_mm - 1, abs=1e-6)
 
 
 def test_servo_arm_and_horn_lie_in_one_plane():

@@ -21,6 +21,7 @@ from buildgen.airframe.members import (
     spars,
     tip_fins,
     tips,
+    torque,
     webs,
     wiring,
 )
@@ -56,6 +57,7 @@ MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ..
     edges.trailing,
     controls.make,
     servos.make,
+    torque.make,
     webs.make,
     braces.make,
     skins.make,

@@ -40,6 +40,7 @@ from buildgen.solid import (
     Placed,
     Pose,
     Prism,
+    Rod,
     Ruled,
     Shape,
     mesh,
@@ -185,7 +186,8 @@ class MovingSurface:
 
     @cached_property
     def spar(self) -> FalseSpar:
-        return FalseSpar(self.place, tuple(p.shape for p in self.leaves if p.shape is not None))
+        rooms = (p.shape for p in self.leaves if p.shape is not None)
+        return FalseSpar(self.place, (*rooms, *self._torque_room(through=True)))
 
     # ------------------------------------------------------------ hinges
 
@@ -233,6 +235,28 @@ class MovingSurface:
         room = Box((-c, -t, -a), (c, t, a))
         return tuple(Placed(room, p.pose) for p in self.leaves)
 
+    def _torque_room(self, through: bool = False) -> tuple[Shape, ...]:
+        """Groove and hole for a torque rod's end; `through` for the notch in the false spar."""
+        if self.place.given.drive != "torque-rod":
+            return ()
+        bend, end = self.place.torque_leg
+        r = self.place.given.rod_mm / 2 + SLOT_PLAY_MM
+        start = self.place.line.start - 6.0 * self.place.line.axis
+        reach = float(np.linalg.norm(bend - start)) + r
+        frame = Pose.at(start, self.place.line.axis, self.frame.rotation[:, 1])
+        if through:
+            deep = self.place.given.gap_mm / 2 + self.spar_mm + 1.0
+            return (Placed(Box((0.0, -r, -deep), (reach, r, 1.0)), frame),)
+        leg = Placed(Rod(r, float(np.linalg.norm(end - bend)) + 0.2),
+                     Pose.at(bend, end - bend, self.frame.rotation[:, 1]))
+        return Placed(Rod(r, reach), frame), leg
+
+    @property
+    def spar_mm(self) -> float:
+        """Thickness of the false spar."""
+        given = self.place.given
+        return self.shop.thickness(given.spar_material, given.spar_thickness_mm)
+
     # ------------------------------------------------------------ wood
 
     @cached_property
@@ -273,7 +297,7 @@ class MovingSurface:
         given, line = self.place.given, self.place.line
         back = 8 * FAR if self.solid else given.nose_mm + given.gap_mm / 2
         body: Shape = Common((self.place.panel.envelope(*self.ends), self._region(back)))
-        room = [*self._slots(), *self._horn_room()]
+        room = [*self._slots(), *self._horn_room(), *self._torque_room()]
         if room:
             body = Difference(body, tuple(room))
         words = {"built-up": "nose of the ", "strip": "", "block": ""}[given.kind]
@@ -381,7 +405,7 @@ class MovingSurface:
     @cached_property
     def horn(self) -> Part | None:
         horn, given = self.place.horn, self.place.given
-        if horn is None:
+        if horn is None or given.drive == "torque-rod":
             return None
         near, deep = self._horn_tab()
         skin = self._skin_mm(near)
