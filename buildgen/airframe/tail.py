@@ -75,12 +75,15 @@ class SheetTail:
         wanted = self.given.tailplane
         area = 0.0
         if wanted.volume is not None:
-            area = wanted.volume * 2 * area_mm2(self.wing.plan) * mean.length_mm / self.given.arm_mm
+            area = wanted.volume * 2 * area_mm2(self.wing.plan) * mean.length_mm / abs(
+                self.given.arm_mm)
         return _outline(wanted, area, halves=2, aspect=4.0)
 
     @cached_property
-    def fin(self) -> Outline:
+    def fin(self) -> Outline | None:
         wanted = self.given.fin
+        if wanted is None:
+            return None
         area = 0.0
         if wanted.volume is not None:
             span = 2 * sum(p.rise_mm[0] for p in self.wing.plan)
@@ -118,6 +121,7 @@ class SheetTail:
     @cached_property
     def upright(self) -> Pose:
         """Frame of the fin: x aft, y up, centred on the plane of symmetry."""
+        assert self.fin is not None
         x = self.tailplane_le_mm + self.tailplane.root_mm - self.fin.root_mm
         at = (x, self.thick_mm / 2, self.level_mm + self.thick_mm)
         return Pose.at(at, (1, 0, 0), (0, 0, 1))
@@ -127,6 +131,7 @@ class SheetTail:
     @cached_property
     def _fin_outline(self) -> Polygon:
         """Fixed fin with its tab through the tailplane."""
+        assert self.fin is not None
         fixed = self.fin.hinge_mm
         whole = self.fin.corners(self.fin.root_mm)
         fin = whole.intersection(box(-500, 0, fixed - HINGE_GAP_MM / 2, 2000))
@@ -152,31 +157,39 @@ class SheetTail:
         far = 4000.0
         blank = Blank("T1", self.flat, self.thick_mm,
                       whole.intersection(box(-far, -far, hinge - gap, far)))
-        tab = Placed(Prism(self._fin_outline, self.thick_mm), self.upright)
-        slot = solid_cut(tab, blank, self.shop.press_mm)
-        fixed, _, _ = apply(blank.outline, [slot])
+        fixed = blank.outline
+        if fin is not None:
+            tab = Placed(Prism(self._fin_outline, self.thick_mm), self.upright)
+            fixed, _, _ = apply(fixed, [solid_cut(tab, blank, self.shop.press_mm)])
         moving = whole.intersection(box(hinge + gap, -far, far, far))
-        rudder_at = fin.hinge_mm + gap
-        rudder = fin.corners(fin.root_mm).intersection(box(rudder_at, 3.0, far, far))
         tail, given = "tail.tailplane", self.given
         parts = [
             self._plate("T1", "tailplane", fixed, self.flat, tail, given.tailplane.lightening),
             self._plate("T2", "elevator", moving, self.flat, tail),
-            self._plate("V1", "fin", self._fin_outline, self.upright, "tail.fin",
-                        given.fin.lightening),
-            self._plate("V2", "rudder", rudder, self.upright, "tail.fin"),
         ]
+        if fin is not None and given.fin is not None:
+            rudder_at = fin.hinge_mm + gap
+            rudder = fin.corners(fin.root_mm).intersection(box(rudder_at, 3.0, far, far))
+            parts += [
+                self._plate("V1", "fin", self._fin_outline, self.upright, "tail.fin",
+                            given.fin.lightening),
+                self._plate("V2", "rudder", rudder, self.upright, "tail.fin"),
+            ]
         return (*parts, *self._hardware())
 
     @cached_property
-    def lines(self) -> tuple[HingeLine, HingeLine]:
+    def lines(self) -> tuple[HingeLine, ...]:
         """Hinge lines of the elevator, port to starboard, and of the rudder, from the top down."""
         half = self.thick_mm / 2
         plane, fin, x, y, z = self.tailplane, self.fin, *np.eye(3)
-        level, upright = self.flat, self.upright
+        level = self.flat
+        elevator = HingeLine(level((plane.hinge_mm, -plane.span_mm, half)),
+                             level((plane.hinge_mm, plane.span_mm, half)), x, z)
+        if fin is None:
+            return (elevator,)
+        upright = self.upright
         return (
-            HingeLine(level((plane.hinge_mm, -plane.span_mm, half)),
-                      level((plane.hinge_mm, plane.span_mm, half)), x, z),
+            elevator,
             HingeLine(upright((fin.hinge_mm, fin.span_mm, half)),
                       upright((fin.hinge_mm, 0.0, half)), x, y),
         )
@@ -184,21 +197,23 @@ class SheetTail:
     @cached_property
     def horns(self) -> tuple[Horn, ...]:
         """Below the elevator beside the fuselage, and low on the rudder's starboard side."""
-        elevator, rudder = self.lines
+        elevator, *more = self.lines
         wide = self.body.width(float(elevator.start[0])) / 2 if self.body else 0.0
         return (
             horn_at(elevator, self.tailplane.span_mm + wide + 8.0, HORN_RADIUS_MM, "down",
                     THROW_DEG, "HEH", "T2", "elevator", "tail.tailplane"),
-            horn_at(rudder, self.fin.span_mm - 15.0, HORN_RADIUS_MM, "up",
-                    THROW_DEG, "HRH", "V2", "rudder", "tail.fin"),
+            *(horn_at(rudder, rudder.length_mm - 15.0, HORN_RADIUS_MM, "up",
+                      THROW_DEG, "HRH", "V2", "rudder", "tail.fin") for rudder in more),
         )
 
     def _hardware(self) -> list[Part]:
         parts = []
-        for id, name, surface, line, horn in (
-            ("HE", "elevator", self.given.tailplane, self.lines[0], self.horns[0]),
-            ("HR", "rudder", self.given.fin, self.lines[1], self.horns[1]),
+        for id, surface, line, horn in zip(
+            ("HE", "HR"), (self.given.tailplane, self.given.fin), self.lines, self.horns,
+            strict=False,
         ):
+            assert surface is not None
+            name = horn.surface
             at = Pose(origin=(line.start + line.end) / 2)
             mass = surface.hinges * LEAF_G
             parts += [
@@ -214,10 +229,11 @@ class SheetTail:
         """Fin in the tailplane, tailplane on the fuselage, controls along their hinge lines."""
         down = (0.0, 0.0, -1.0)
         hinge = (0.8 * HINGE_GAP_MM, 1.2 * HINGE_GAP_MM)
+        fin = (Joint("tab in slot", "V1", "T1", (0.0, self.shop.press_mm + 0.1), down),
+               Joint("hinged", "V2", "V1", hinge)) if self.fin else ()
         return (
-            Joint("tab in slot", "V1", "T1", (0.0, self.shop.press_mm + 0.1), down),
             Joint("hinged", "T2", "T1", hinge),
-            Joint("hinged", "V2", "V1", hinge),
+            *fin,
             *(Joint("face to face", "T1", deck, (0.0, 0.2), down) for deck in self._under()),
         )
 

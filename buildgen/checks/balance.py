@@ -57,6 +57,10 @@ def neutral_point(frame: Airframe) -> Neutral:
         return Neutral(tailless.wing_neutral_x_mm(plan), mean.length_mm, mean.le_x_mm, span, area,
                        0.0, tailless.fin_volume(frame), tailless.BASIS)
     tail = frame.tail
+    if tail.given.arm_mm < 0:
+        return Neutral(tailless.with_foreplane_x_mm(plan, tail), mean.length_mm, mean.le_x_mm,
+                       span, area, 0.0, tailless.fin_volume(frame), tailless.CANARD_BASIS)
+    assert tail.fin is not None
     half = (tail.tailplane.panel,)
     tail_area = 2 * tail.tailplane.area_mm2
     arm = tail.given.arm_mm

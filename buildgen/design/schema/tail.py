@@ -43,9 +43,24 @@ class Surface(Table):
 class Tail(Table):
     """Tailplane on top of the fuselage and fin on the tailplane, from sheet."""
 
-    arm_mm: Length = Field(description="Wing's quarter chord to the tailplane's.")
+    arm_mm: Number = Field(
+        description="Wing's quarter chord to the tailplane's; negative ahead of it, a canard."
+    )
     material: str = "balsa-light"
     thickness_mm: Length = 4.0
     tailplane: Surface
-    fin: Surface
+    fin: Surface | None = Field(None, description="None where the wing's tip fins do its work.")
     covering: str | None = "film"
+
+    @model_validator(mode="after")
+    def _fin_behind(self) -> Tail:
+        if abs(self.arm_mm) < 1:
+            raise ValueError("arm_mm must not be 0: the tailplane would stand in the wing")
+        if self.arm_mm < 0 and self.fin is not None:
+            raise ValueError(
+                "a fin on a tailplane ahead of the wing turns the aircraft round: leave out"
+                " tail.fin and give the wing [wing.tip_fin]"
+            )
+        if self.arm_mm > 0 and self.fin is None:
+            raise ValueError("fin is missing")
+        return self
