@@ -7,8 +7,9 @@ from dataclasses import dataclass
 import numpy as np
 
 from buildgen.design.schema import Laser
-from buildgen.part import Kit, Part
+from buildgen.part import Kit, Part, Plate
 from buildgen.sheets.arcs import Bulges, with_arcs
+from buildgen.sheets.bare import Bare
 from buildgen.sheets.bridges import bridged
 from buildgen.sheets.contour import Contours, beam_path, moved, moved_strokes
 from buildgen.sheets.letters import width_mm, write
@@ -64,9 +65,11 @@ def colours(laser: Laser) -> dict[str, int]:
 
 def draw(sheet: Sheet, kit: Kit, laser: Laser) -> Drawing:
     """Everything on a sheet where it lies."""
-    guests = guests_of(sheet.placed_shapes())
+    shapes = sheet.placed_shapes()
+    guests = guests_of(shapes)
+    bare = Bare(sheet.outline, shapes)
     pieces = [
-        _piece(part, at, moved(path, *_place(at)), sheet, laser, n in guests)
+        _piece(part, at, moved(path, *_place(at)), sheet, laser, n in guests, bare)
         for n, (part, at, path) in enumerate(
             zip(sheet.parts, sheet.placements, sheet.paths, strict=True))
     ]
@@ -86,13 +89,14 @@ def _place(at: Placement) -> tuple[float, float, float, bool]:
 
 
 def _piece(
-    part: Part, at: Placement, path: Contours, sheet: Sheet, laser: Laser, guest: bool
+    part: Part, at: Placement, path: Contours, sheet: Sheet, laser: Laser, guest: bool, bare: Bare
 ) -> Piece:
     """One part where it lies."""
+    assert isinstance(part.form, Plate)
     strokes, inside = strokes_of(part, laser.letter_mm, at.label, laser.grain_arrows)
     marks = moved_strokes(strokes, *_place(at))
     if not inside:
-        marks += _beside(at.label, path)
+        marks += bare.written(at.label, at.of(part.form.shape2d))
     runs: tuple[Array, ...] = ()
     arcs: tuple[Bulges, ...] = ()
     if laser.bridges:
@@ -101,10 +105,3 @@ def _piece(
         fine = moved(beam_path(part, sheet.kerf_mm, 0.0), *_place(at))
         arcs = tuple(with_arcs(ring, laser.arc_mm) for ring in (fine.outside, *fine.inside))
     return Piece(at.label, path, tuple(marks), inside, runs, arcs, guest)
-
-
-def _beside(id: str, path: Contours) -> list[Array]:
-    """An id too long for its part, beside it on the sheet."""
-    low, high = path.outside.min(axis=0), path.outside.max(axis=0)
-    at = (float(low[0] + high[0]) / 2, float(high[1]) + 1.6)
-    return [np.array(s) for s in write(id, 2.0, at)]

@@ -7,6 +7,7 @@ from functools import lru_cache
 
 import numpy as np
 import shapely
+from shapely import Geometry
 from shapely.affinity import rotate
 from shapely.geometry import LineString, Polygon
 
@@ -18,6 +19,8 @@ LEAST_MM = 2.0
 MOST_TRIES = 600
 """Places tried on a large part before the fine grid is: most have room somewhere near."""
 ARROW_MM = (20.0, 14.0, 9.0)
+TWICE_MM = 0.05
+"""Lines this near to each other are one."""
 CLEAR_MM = 0.8
 """Between lettering and a cut: scorched edges swallow less; common practice, no source."""
 
@@ -39,10 +42,26 @@ def strokes_of(
     if found is None:
         found = id_mark(part, height_mm, label)
         marks += [found] if found else []
-    strokes = [s for m in marks for s in _strokes(m)]
+    strokes = [s for m in marks if m.text for s in _strokes(m)]
+    strokes += once([s for m in marks if not m.text for s in _strokes(m)])
     if arrow and part.form.grain_deg is not None:
         strokes += grain_arrow(part.form, strokes)
     return strokes, found is not None
+
+
+def once(lines: list[Stroke]) -> list[Stroke]:
+    """Lines less what of them an earlier line covers: nothing is engraved twice."""
+    found: list[Stroke] = []
+    burnt: Geometry = LineString()
+    for line in lines:
+        rest: Geometry = LineString(line)
+        if not burnt.is_empty:
+            rest = rest.difference(burnt.buffer(TWICE_MM, cap_style="flat"))
+        kept = [g for g in shapely.get_parts(rest) if g.length > 4 * TWICE_MM]
+        whole = len(kept) == 1 and abs(kept[0].length - LineString(line).length) < TWICE_MM
+        found += [line] if whole else [tuple(g.coords) for g in kept]
+        burnt = burnt.union(LineString(line))
+    return found
 
 
 def grain_arrow(plate: Plate, strokes: list[Stroke]) -> list[Stroke]:

@@ -4,9 +4,11 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable, Sequence
+from numbers import Integral
 from typing import TYPE_CHECKING
 
 from shapely.geometry import Polygon
+from shapely.validation import explain_validity
 
 from buildgen.problems import Problem, nearest
 from buildgen.sheets.nest_types import NestFixed, NestPart, NestStock
@@ -34,9 +36,9 @@ def faulty_parts(parts: Sequence[NestPart]) -> list[Problem]:
     found = _repeated("parts", [p.id for p in parts])
     for part in parts:
         if not _is_area(part.polygon):
-            found.append(Problem(part.id, "Its outline is not a valid area."))
-        if part.quantity < 1:
-            found.append(Problem(part.id, f"{part.quantity} is not a number of copies."))
+            found.append(Problem(part.id, _why_no_area(part.polygon)))
+        if not _is_count(part.quantity, 1):
+            found.append(Problem(part.id, f"{part.quantity!r} is not a number of copies."))
         if not part.angles_deg or not all(map(math.isfinite, part.angles_deg)):
             found.append(Problem(part.id, "It needs at least one angle."))
         if not 0.0 <= part.lean_deg <= 180.0:
@@ -54,7 +56,13 @@ def faulty_stock(stock: Sequence[NestStock]) -> list[Problem]:
             found.append(Problem(sheet.id, "A sheet needs a width and a height above 0."))
         elif not _is_area(sheet.outline):
             found.append(Problem(sheet.id, "Its outline is not a valid area."))
+        if sheet.quantity is not None and not _is_count(sheet.quantity, 0):
+            found.append(Problem(sheet.id, f"{sheet.quantity!r} is not a number of sheets."))
     return found
+
+
+def _is_count(value: object, least: int) -> bool:
+    return isinstance(value, Integral) and not isinstance(value, bool) and int(value) >= least
 
 
 def faulty_fixed(fixed: Sequence[NestFixed], stock: Sequence[NestStock]) -> list[Problem]:
@@ -78,6 +86,15 @@ def _repeated(path: str, ids: Sequence[str]) -> list[Problem]:
 
 def _is_area(polygon: Polygon) -> bool:
     return isinstance(polygon, Polygon) and polygon.is_valid and polygon.area > 0.0
+
+
+def _why_no_area(shape: object) -> str:
+    """What is the matter with an outline, with the place where it can be told."""
+    if not isinstance(shape, Polygon):
+        return f"Its outline is a {type(shape).__name__}, not one Polygon."
+    if shape.is_empty or not shape.area > 0.0:
+        return "Its outline encloses no area."
+    return f"Its outline is not a valid area: {explain_validity(shape)}."
 
 
 def too_large(part: NestPart, stock: Sequence[NestStock], margin_mm: float) -> Problem:

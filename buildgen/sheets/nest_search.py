@@ -32,18 +32,16 @@ class Dice:
 
 
 def is_full(kind: Kind, kinds: Sequence[Kind]) -> bool:
-    """Whether a sheet of this kind is counted: bought as needed, or as large as any at hand."""
-    if kind.stock.quantity is None:
-        return True
+    """Whether a sheet of this kind is counted: bought as needed; else every whole rectangle."""
+    if any(k.stock.quantity is None for k in kinds):
+        return kind.stock.quantity is None
     largest = max(k.outline.area for k in kinds)
-    return kind.outline.area >= largest * 0.999 and all(
-        k.stock.quantity is not None for k in kinds
-    )
+    return kind.stock.polygon is None or kind.outline.area >= largest * 0.999
 
 
 def plans(kinds: Sequence[Kind], begun: Sequence[Sheet], wanted: int) -> list[Plan]:
     """Ways to open sheets: begun ones first; offcuts at once, as needed or never."""
-    full = [k for k in kinds if is_full(k, kinds)]
+    full = sorted((k for k in kinds if is_full(k, kinds)), key=lambda k: -k.outline.area)
     offcuts = sorted((k for k in kinds if not is_full(k, kinds)), key=lambda k: k.outline.area)
     numbers = {id(k): 1 + max([-1, *(s.number for s in begun if s.kind is k)]) for k in kinds}
 

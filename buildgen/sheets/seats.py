@@ -64,7 +64,7 @@ def _marked(plate: Solid, solids: list[Solid]) -> Part:
         if other is plate or not plate.near(other):
             continue
         if isinstance(other.part.form, Plate):
-            marks += _seat(plate, other, free)
+            marks += _seat(plate, other, free, marks)
         elif form.bend is None and (form.circles or form.outline.interiors):
             marks += _passage(plate, other, free)
     if not marks:
@@ -72,8 +72,11 @@ def _marked(plate: Solid, solids: list[Solid]) -> Part:
     return replace(plate.part, form=replace(form, marks=(*form.marks, *marks)))
 
 
-def _seat(plate: Solid, other: Solid, free: Polygon) -> list[Mark]:
-    """The outline of a neighbour's foot on the plate's upper face, and its id beside it."""
+def _seat(plate: Solid, other: Solid, free: Polygon, before: list[Mark]) -> list[Mark]:
+    """The outline of a neighbour's foot on the plate's upper face, and its id beside it.
+
+    The id keeps clear of the marks that were there before, the plate's own among them.
+    """
     form, foot_form = plate.part.form, other.part.form
     assert isinstance(form, Plate)
     assert isinstance(foot_form, Plate)
@@ -83,7 +86,16 @@ def _seat(plate: Solid, other: Solid, free: Polygon) -> list[Mark]:
     if not LEAST_MM2 < foot.area < MOST_SHARE * form.area_mm2:
         return []
     marks = _lines(foot.boundary.intersection(free))
-    return [*marks, *_name(other.part.id, foot, free)] if marks else []
+    if not marks:
+        return []
+    names = [_room(m.text, m.at).buffer(0.6) for m in (*form.marks, *before) if m.text]
+    return [*marks, *_name(other.part.id, foot, free.difference(shapely.union_all(names)))]
+
+
+def _room(id: str, at: tuple[float, float]) -> Polygon:
+    """What a neighbour's id takes up."""
+    wide = width_mm(id, LABEL_MM) / 2
+    return box(at[0] - wide, at[1] - LABEL_MM / 2, at[0] + wide, at[1] + LABEL_MM / 2)
 
 
 def _foot(part: Part, form: Plate, other: Shape) -> Polygon:
@@ -125,7 +137,7 @@ def _name(id: str, foot: Polygon, free: Polygon) -> list[Mark]:
     wide = width_mm(id, LABEL_MM) / 2
     near = foot.buffer(0.6)
     for at in ((x1 + wide + 1.2, y), (x0 - wide - 1.2, y), (x, y1 + LABEL_MM), (x, y0 - LABEL_MM)):
-        room = box(at[0] - wide, at[1] - LABEL_MM / 2, at[0] + wide, at[1] + LABEL_MM / 2)
+        room = _room(id, at)
         if free.contains(room) and not near.intersects(room):
             return [Mark(id, at, LABEL_MM)]
     return []

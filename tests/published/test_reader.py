@@ -11,6 +11,7 @@ from pyogrio import set_gdal_config_options
 from pyogrio.raw import read as gdal_read
 from shapely.geometry import Polygon
 
+from buildgen.design import shipped_designs
 from buildgen.design.schema import Laser
 from buildgen.sheets.dxf import sheet_dxf
 from tests.sheets.conftest import small_kit, small_sheets
@@ -24,7 +25,7 @@ def gdal_lines(path: Path) -> list[tuple[str, shapely.Geometry]]:
     return list(zip(layers, shapely.from_wkb(geometry), strict=True))
 
 
-@pytest.mark.parametrize("name", ["marram", "samphire", "sedge"])
+@pytest.mark.parametrize("name", shipped_designs())
 def test_gdal_sees_the_same_closed_areas_in_the_same_places(name: str, tmp_path: Path) -> None:
     kit, sheets = laid(name)
     for sheet in sheets:

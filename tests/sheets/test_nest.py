@@ -13,7 +13,7 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 from shapely import affinity
-from shapely.geometry import Point, Polygon, box
+from shapely.geometry import MultiPolygon, Point, Polygon, box
 
 from buildgen.problems import DesignError
 from buildgen.sheets import (
@@ -247,3 +247,26 @@ def test_same_layout_in_other_processes_and_hash_seeds():
         seen.add(done.stdout.strip())
     assert len(seen) == 1
     assert len(seen.pop()) == len(hashlib.sha256(b"").hexdigest())
+
+
+def test_of_limited_sheets_the_fewest_are_taken() -> None:
+    """Nine squares on the large sheet and three on each long one: four sheets, by hand."""
+    part = NestPart("square", box(0, 0, 90, 90), 18, (0.0,))
+    stock = [NestStock("large", 300, 300, quantity=1), NestStock("small", 200, 100, quantity=2),
+             NestStock("long", 300, 100, quantity=5)]
+    result = nest([part], stock, spacing_mm=1.0, margin_mm=2.0, effort="quick")
+    assert result.sheets_by_stock == {"large": 1, "long": 3}
+
+
+def test_every_odd_input_is_told_by_its_name() -> None:
+    bow = Polygon([(0, 0), (10, 10), (10, 0), (0, 12)])
+    parts = [
+        NestPart("bow", bow), NestPart("two", MultiPolygon([box(0, 0, 1, 1), box(3, 3, 4, 4)])),  # type: ignore[arg-type]
+        NestPart("empty", Polygon()), NestPart("half", box(0, 0, 9, 9), 1.5),  # type: ignore[arg-type]
+    ]
+    with pytest.raises(DesignError) as error:
+        nest(parts, [NestStock("s", 99, 99, quantity=-1)], spacing_mm=1, margin_mm=1)
+    told = {p.path: p.says for p in error.value.problems}
+    assert set(told) == {"bow", "two", "empty", "half", "s"}
+    assert "Self-intersection" in told["bow"]
+    assert "MultiPolygon" in told["two"]

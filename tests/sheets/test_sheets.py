@@ -3,27 +3,30 @@
 from __future__ import annotations
 
 import io
+from collections.abc import Iterable
 from dataclasses import replace
+from functools import cache
 
 import ezdxf
 import numpy as np
 import pytest
 import shapely
-from shapely.geometry import LineString, Polygon
+from shapely.geometry import LineString, Point, Polygon
 
 from buildgen import Build
+from buildgen.design import shipped_designs
 from buildgen.design.schema import Laser
 from buildgen.sheets.drawing import CUT_INSIDE, CUT_OUTSIDE, MARK, SHEET
 from buildgen.sheets.dxf import sheet_dxf
 from buildgen.sheets.layout import Sheet, lay_out
-from buildgen.sheets.letters import write
-from buildgen.sheets.marks import strokes_of
+from buildgen.sheets.marks import CLEAR_MM
 from buildgen.sheets.svg import sheet_svg
 from tests.conftest import shipped_kit
 
 QUICK = Laser(effort="quick")
 
 
+@cache
 def laid(name: str) -> tuple[Build, tuple[Sheet, ...]]:
     kit = shipped_kit(name)
     assert kit.design is not None
@@ -31,25 +34,13 @@ def laid(name: str) -> tuple[Build, tuple[Sheet, ...]]:
     return kit, lay_out(kit, definition, kit.design.shelf)
 
 
-@pytest.fixture(scope="module", params=["marram", "samphire", "sedge"])
+@pytest.fixture(scope="module", params=shipped_designs())
 def cut(request: pytest.FixtureRequest) -> tuple[Build, tuple[Sheet, ...]]:
     return laid(request.param)
 
 
 def read(sheet: Sheet, kit: Build, laser: Laser = QUICK):  # type: ignore[no-untyped-def]
     return ezdxf.read(io.StringIO(sheet_dxf(sheet, kit, laser)))
-
-
-def rings(document, layer: str) -> list[Polygon]:  # type: ignore[no-untyped-def]
-    found = []
-    for entity in document.modelspace().query(f'*[layer=="{layer}"]'):
-        if entity.dxftype() == "CIRCLE":
-            x, y, _ = entity.dxf.center
-            found.append(shapely.Point(x, y).buffer(entity.dxf.radius, 64))
-        else:
-            assert entity.closed
-            found.append(Polygon([(x, y) for x, y, *_ in entity.get_points("xy")]))
-    return found
 
 
 def test_spacing_and_margin_are_kept(cut) -> None:  # type: ignore[no-untyped-def]
@@ -97,60 +88,78 @@ def test_every_version_holds_the_same_cuts(version: str) -> None:
     assert len(cuts) == expected
 
 
-def test_contours_are_closed_simple_and_without_twins(cut) -> None:  # type: ignore[no-untyped-def]
+CLEAR = CLEAR_MM - 0.1  # lettering; lines of neighbours end at a cut's clearance as well
+
+
+@pytest.fixture(scope="module")
+def drawn(cut) -> list[tuple[Sheet, object]]:  # type: ignore[no-untyped-def]
+    """Each sheet of a design with its DXF as a reader sees it."""
     kit, sheets = cut
-    for sheet in sheets:
-        document = read(sheet, kit)
-        found = [*rings(document, CUT_OUTSIDE), *rings(document, CUT_INSIDE)]
-        for ring in found:
-            assert ring.is_valid
-            edges = np.linalg.norm(np.diff(np.asarray(ring.exterior.coords), axis=0), axis=1)
-            assert edges.min() > 1e-3
-        for ring, other in zip(found, found[1:], strict=False):
-            assert not ring.exterior.equals(other.exterior)
-        lines = [LineString(r.exterior.coords) for r in found]
-        tree = shapely.STRtree(lines)
-        a, b = tree.query(lines, predicate="intersects")
-        assert np.array_equal(a, b), "two contours touch or overlap"
+    return [(s, read(s, kit)) for s in sheets]
 
 
-def test_inside_comes_before_outside_of_the_same_part(cut) -> None:  # type: ignore[no-untyped-def]
-    kit, sheets = cut
-    for sheet in sheets:
-        waiting: list[Polygon] = []
-        for entity in read(sheet, kit).modelspace():
-            if entity.dxf.layer == CUT_INSIDE:
-                waiting.append(_inner_point(entity))
-            elif entity.dxf.layer == CUT_OUTSIDE:
-                outside = Polygon([(x, y) for x, y, *_ in entity.get_points("xy")])
-                assert all(outside.contains(p) for p in waiting)
-                waiting = []
-        assert waiting == []
-
-
-def _inner_point(entity):  # type: ignore[no-untyped-def]
+def line_of(entity) -> LineString:  # type: ignore[no-untyped-def]
     if entity.dxftype() == "CIRCLE":
-        return shapely.Point(entity.dxf.center[0], entity.dxf.center[1])
-    return Polygon([(x, y) for x, y, *_ in entity.get_points("xy")]).representative_point()
+        x, y, _ = entity.dxf.center
+        return LineString(Point(x, y).buffer(entity.dxf.radius, 64).exterior.coords)
+    points = [(x, y) for x, y, *_ in entity.get_points("xy")]
+    return LineString([*points, points[0]] if entity.closed else points)
 
 
-SMALL_MM2 = 120.0
-"""Rib tails of ailerons: too slim for their ids, which stand beside them on the sheet."""
+def lines_on(document, layers: Iterable[str]) -> list[LineString]:  # type: ignore[no-untyped-def]
+    return [line_of(e) for e in document.modelspace() if e.dxf.layer in layers]
 
 
-def test_marks_lie_inside_their_parts_and_clear_of_cuts(cut) -> None:  # type: ignore[no-untyped-def]
-    kit, sheets = cut
-    for sheet in sheets:
-        shapes = shapely.union_all([s.buffer(-0.4) for s in sheet.placed_shapes()])
-        beside = 0
-        for entity in read(sheet, kit).modelspace().query(f'*[layer=="{MARK}"]'):
-            stroke = LineString([(x, y) for x, y, *_ in entity.get_points("xy")])
-            beside += not shapes.contains(stroke)
-        small = [p.label for p in sheet.placements
-                 if not strokes_of(kit.by_id[p.part], 5.0, p.label)[1]]
-        assert all(kit.by_id[p.part].form.area_mm2 < SMALL_MM2 for p in sheet.placements
-                   if p.label in small)
-        assert beside <= sum(len(write(label, 2.0)) for label in small), sheet.file
+def twice(lines: list[LineString]) -> float:
+    """Length that is drawn more than once, partial overlaps counted, mm."""
+    legs = [LineString(line.coords[i : i + 2]) for line in lines
+            for i in range(len(line.coords) - 1)]
+    a, b = shapely.STRtree(legs).query(legs, predicate="intersects")
+    pairs = [(i, j) for i, j in zip(a.tolist(), b.tolist(), strict=True) if i < j]
+    return sum(float(legs[i].intersection(legs[j]).length) for i, j in pairs)
+
+
+def test_twice_sees_a_partial_overlap() -> None:
+    assert twice([LineString([(0, 0), (9, 0)]), LineString([(12, 0), (6, 0)])]) == 3.0
+
+
+def test_audit_is_clean_and_every_contour_is_closed_and_simple(drawn) -> None:  # type: ignore[no-untyped-def]
+    for sheet, document in drawn:
+        audit = document.audit()
+        assert not audit.errors
+        assert not audit.fixes
+        cuts = lines_on(document, (CUT_INSIDE, CUT_OUTSIDE))
+        assert len(cuts) == sum(1 + len(c.inside) + len(c.circles) for c in sheet.paths)
+        assert all(c.is_ring and Polygon(c).is_valid for c in cuts), sheet.file
+
+
+def test_nothing_is_cut_or_engraved_twice(drawn) -> None:  # type: ignore[no-untyped-def]
+    for sheet, document in drawn:
+        cuts = lines_on(document, (CUT_INSIDE, CUT_OUTSIDE))
+        a, b = shapely.STRtree(cuts).query(cuts, predicate="intersects")
+        assert np.array_equal(a, b), f"{sheet.file}: two contours touch"
+        assert twice(lines_on(document, (MARK,))) < 0.2, sheet.file
+
+
+def test_marks_keep_clear_of_every_cut(drawn) -> None:  # type: ignore[no-untyped-def]
+    """Inside the parts or, for parts too slim, on the bare sheet: never over an edge."""
+    for sheet, document in drawn:
+        cuts = shapely.union_all(lines_on(document, (CUT_INSIDE, CUT_OUTSIDE)))
+        for mark in lines_on(document, (MARK,)):
+            assert mark.distance(cuts) > CLEAR - sheet.kerf_mm, sheet.file
+            assert sheet.outline.contains(mark), sheet.file
+
+
+def test_inside_comes_before_outside(drawn) -> None:  # type: ignore[no-untyped-def]
+    for sheet, document in drawn:
+        gone: list[Polygon] = []
+        for entity in document.modelspace():
+            if entity.dxf.layer not in (CUT_INSIDE, CUT_OUTSIDE):
+                continue
+            ring = Polygon(line_of(entity))
+            assert not any(g.contains(ring) for g in gone), sheet.file
+            if entity.dxf.layer == CUT_OUTSIDE:
+                gone.append(ring)
 
 
 def test_name_revision_and_hash_stand_on_every_sheet(cut) -> None:  # type: ignore[no-untyped-def]
