@@ -19,6 +19,7 @@ class Bay:
         s_mm: the same along its panel.
         half_mm: half the clear width between the two ribs.
         rib_mm: thickness of those ribs.
+        rear: the mount sits on the trailing edge.
     """
 
     index: int
@@ -27,6 +28,7 @@ class Bay:
     s_mm: float
     half_mm: float
     rib_mm: float
+    rear: bool = False
 
     @property
     def inner_face_mm(self) -> float:
@@ -61,12 +63,18 @@ def make_bays(power: Power | None, wing: WingShape, rib_mm: float) -> tuple[Bay,
     problems: list[Problem] = []
     for i, span in enumerate(stations(power, wing.half_span_mm), start=1):
         panel, s = wing.at(span)
-        bay = Bay(i, panel, span, s, power.mount.bay_mm / 2, rib_mm)
+        bay = Bay(i, panel, span, s, power.mount.bay_mm / 2, rib_mm,
+                  power.mount.edge == "trailing")
         problems += _faults(bay, bays[-1] if bays else None)
         bays.append(bay)
     if problems:
         raise DesignError(*problems)
     return tuple(bays)
+
+
+def on_edge(bays: tuple[Bay, ...], panel: Panel, rear: bool) -> list[Bay]:
+    """The bays of a panel whose mounts sit on its leading or on its trailing edge."""
+    return [b for b in bays if b.panel is panel and b.rear == rear]
 
 
 def _faults(bay: Bay, before: Bay | None) -> list[Problem]:

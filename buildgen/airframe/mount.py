@@ -42,6 +42,8 @@ from buildgen.solid import (
 NOSE_PLAY_MM = 0.25
 """Between the saddle and the wing's nose: covering and glue."""
 CORNER_STEPS = 10
+TONGUE_MM = 16.0
+"""Greatest height of a tongue."""
 
 
 @dataclass(frozen=True, eq=False)
@@ -108,7 +110,7 @@ class MountShape:
     def tongue(self) -> tuple[float, float, float, float]:
         """x from, x to, z from, z to of both tongues in the bay's frame."""
         middle, low, high = self.nose_mm
-        height = min(16.0, high - low - 2.0)
+        height = min(TONGUE_MM, high - low - 2.0)
         return (-self.mount.tongue_mm, self.mount.wrap_mm,
                 middle - height / 2, middle + height / 2)
 

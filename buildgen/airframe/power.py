@@ -9,6 +9,7 @@ from functools import cached_property
 from buildgen.airframe.bays import Bay, make_bays
 from buildgen.airframe.blank import Cut
 from buildgen.airframe.mount import MountShape, bolt_points, thrust_axis
+from buildgen.airframe.pusher import PusherShape
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape
 from buildgen.design.schema import Power
@@ -28,13 +29,15 @@ CATALOGUE_SIGMA = 0.03
 
 @dataclass(frozen=True, eq=False)
 class Thrust:
-    """One motor's thrust line: seat on the mount, disc centre, unit pull."""
+    """One motor's thrust line: seat on the mount, disc centre, unit pull, and the way from the
+    seat to the disc: against the pull where the motor pushes."""
 
     motor: int
     side: str
     seat: Array
     disc: Array
     pull: Array
+    out: Array
     turns: str
 
 
@@ -60,7 +63,8 @@ class Drive:
 
     @cached_property
     def mounts(self) -> tuple[MountShape, ...]:
-        return tuple(MountShape(self.shop, self.power, b) for b in self.bays if self.power)
+        return tuple((PusherShape if b.rear else MountShape)(self.shop, self.power, b)
+                     for b in self.bays if self.power)
 
     @property
     def rib_cuts(self) -> dict[int, Callable[[Pose], Cut]]:
@@ -81,7 +85,7 @@ class Drive:
             right = self._thrust(m)
             left = replace(
                 right, side="left", seat=right.seat * (1, -1, 1), disc=right.disc * (1, -1, 1),
-                pull=right.pull * (1, -1, 1),
+                pull=right.pull * (1, -1, 1), out=right.out * (1, -1, 1),
                 turns=self._turns("left"),
             )
             found += [right, left]
@@ -98,14 +102,16 @@ class Drive:
         pull = thrust_axis(m.power)
         ahead = m.motor.length_mm + 6.0
         seat = m.face.origin
-        return Thrust(m.bay.index, "right", seat, seat + ahead * pull, pull, self._turns("right"))
+        out = -pull if m.bay.rear else pull
+        return Thrust(m.bay.index, "right", seat, seat + ahead * out, pull, out,
+                      self._turns("right"))
 
     def _nose_thrust(self) -> Thrust:
         assert self.power is not None and self.nose_seat is not None
         pull = thrust_axis(self.power)
         seat = self.nose_seat.origin
         ahead = self.power.mount.plate_mm + self.power.motor.length_mm + 6.0
-        return Thrust(1, "centre", seat, seat + ahead * pull, pull, "clockwise")
+        return Thrust(1, "centre", seat, seat + ahead * pull, pull, pull, "clockwise")
 
     # ------------------------------------------------------------ parts
 
@@ -156,7 +162,7 @@ class Drive:
         motor, prop = power.motor, power.propeller
         tag = f"{line.motor}{'' if line.side == 'centre' else line.side[0].upper()}"
         back = line.seat + (power.mount.plate_mm * line.pull if power.place == "nose" else 0.0)
-        pose = Pose.at(back, line.pull, (0, 0, 1))
+        pose = Pose.at(back, line.out, (0, 0, 1))
         can = Rod(motor.diameter_mm / 2, motor.length_mm)
         hub = Pose.at(line.disc, line.pull, (0, 0, 1))
         blade = Box((-2.0, -prop.diameter_mm / 2, -6.0), (2.0, prop.diameter_mm / 2, 6.0))
@@ -255,15 +261,16 @@ class Drive:
         found = [self._seated(t) for t in self.thrusts]
         band = (0.0, 2 * self.shop.print_settings.slip_mm)
         for m in self.mounts:
+            on = (-1.0 if m.bay.rear else 1.0, 0.0, 0.0)
             for rib in ribs_of_bay[m.bay.index]:
                 found += [Joint("mount on tongue", f"M{m.bay.index}{side}", f"{rib[:-1]}{side}",
-                                band, (1.0, 0.0, 0.0)) for side in "RL"]
+                                band, on) for side in "RL"]
         return tuple(found)
 
     def _seated(self, line: Thrust) -> Joint:
-        """A motor's back on its mount, pushed on against its pull."""
+        """A motor's back on its mount, pushed on against the way to its disc."""
         tag = f"{line.motor}{'' if line.side == 'centre' else line.side[0].upper()}"
-        x, y, z = (float(-v) for v in line.pull)
+        x, y, z = (float(-v) for v in line.out)
         return Joint("face to face", f"MOT{tag}", f"M{tag}", (0.0, 0.05), (x, y, z))
 
 

@@ -65,15 +65,26 @@ class Skin:
     def cutter(self) -> Shape:
         """All that the sheet takes from a rib: from its own inner surface outwards, and past
         both end planes."""
-        rows = [self._row(pose, self.thick_mm, True) for pose in (self.inner, self.outer)]
+        deep = self.thick_mm + self._warp_mm
+        rows = [self._row(pose, deep, True) for pose in (self.inner, self.outer)]
         run = rows[1] - rows[0]
         share = BESIDE_MM / float(np.linalg.norm(run, axis=1).min())
         out = self.panel.up * (FAR_MM if self.upper else -FAR_MM)
         rings = []
+        # Aft to fore as in the sheet itself: a twisted face is then halved along one diagonal.
         for row in (rows[0] - share * run, rows[1] + share * run):
-            lid = np.vstack([row[-1:], row[-1:] + out, row[:1] + out, row[:1]])
-            rings.append(ring((row, True), (lid, False)))
+            lid = np.vstack([row[:1], row[:1] + out, row[-1:] + out, row[-1:]])
+            rings.append(ring((row[::-1], True), (lid, False)))
         return Ruled(*rings)
+
+    @cached_property
+    def _warp_mm(self) -> float:
+        """How far the two diagonals of a twisted face pass each other at most; 0 untwisted.
+
+        The sheet is put in as the hull of its faces, so that a rib stays clear of both.
+        """
+        a, b = (self._row(pose, self.thick_mm, True) for pose in (self.inner, self.outer))
+        return float(np.abs((a[:-1] + b[1:] - a[1:] - b[:-1]) @ self.panel.up).max()) / 2
 
     @cached_property
     def flat(self) -> Polygon:

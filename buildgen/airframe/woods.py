@@ -31,6 +31,10 @@ def _wing(wing: Wing) -> Iterator[tuple[str, str, str]]:
         yield "wing.ribs.root_material", wing.ribs.root_material, "sheet"
     for n, spar in enumerate(wing.spar, start=1):
         yield f"wing.spar[{n}].material", spar.material, ""
+        if spar.kind == "capped":
+            yield f"wing.spar[{n}].web_material", spar.web_material, "sheet"
+            if spar.brace_mm:
+                yield f"wing.spar[{n}].brace_material", spar.brace_material, "sheet"
     if wing.leading_edge.kind != "none":
         yield "wing.leading_edge.material", wing.leading_edge.material, ""
     if wing.trailing_edge.kind != "none":

@@ -37,8 +37,10 @@ side that stands oblique, ahead of the nose on a tongue, away from a skin that s
 SAMPLE_MM = 0.5
 REACH_MM = 3.0
 """How far round the inner part the outer one is looked at; a gap beyond it is no joint."""
-WHOLE = 0.985
-"""A section with less area than this of the largest runs out through the part's end."""
+WHOLE = {"spar in hole": 0.9995}
+WHOLE_ELSE = 0.985
+"""A section with less area than this of the largest runs out through the part's end; a bar's
+section is the same all along it."""
 DEEP_MM = 0.01
 STEP_MM = 0.05
 FACING_MM = 1.0
@@ -110,7 +112,7 @@ def _play(joint: Joint, inner: Solid, outer: Solid) -> Measured:
             for pose, depth in _sections(joint, inner, outer)]
     whole = max((mine.area for _, _, mine in cuts), default=0.0)
     for pose, depth, mine in cuts:
-        if mine.area < WHOLE * whole or mine.is_empty:
+        if mine.area < WHOLE.get(joint.kind, WHOLE_ELSE) * whole or mine.is_empty:
             continue
         theirs = _outer_section(outer, pose, depth, mine)
         gaps, points = _gaps(mine, theirs)

@@ -74,6 +74,7 @@ POWERS = (
     "", f"[power]\nmotors = 2\nfirst_mm = 170\n{MOTOR}",
     f"[power]\nmotors = 2\nfirst_mm = 190\ndown_deg = 3\nside_deg = 2\n{MOTOR}",
     f'[power]\nplace = "nose"\nmotors = 1\ndown_deg = 2\n{MOTOR}',
+    f'[power]\nmotors = 2\nfirst_mm = 180\nmount = {{ edge = "trailing" }}\n{MOTOR}',
 )
 PANELS = (
     "", "[[wing.panel]]\nspan_mm = 180\ntip_chord_mm = 120\ndihedral_deg = {up}\nsweep_mm = 25",

@@ -13,12 +13,13 @@ from typing import Literal
 
 import numpy as np
 
-from buildgen.airframe.bays import Bay
+from buildgen.airframe.bays import Bay, on_edge
 from buildgen.airframe.blank import Bar, Blank, Cut, bar_cut
 from buildgen.airframe.moving import fixed_edge
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import AFT, Panel, WingShape
 from buildgen.part import Joint, Part
+from buildgen.problems import DesignError, Problem
 from buildgen.solid import Array, Common, Pose, Ruled, Shape, circle_points, ring
 
 STEP = "Wing: edges"
@@ -162,7 +163,7 @@ def leading(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edge
     if given.kind == "none":
         return
     for panel in wing.panels:
-        own = [b for b in bays if b.panel is panel]
+        own = on_edge(bays, panel, rear=False)
         marks = [0.0, *(m for b in own for m in (b.inner_face_mm, b.outer_face_mm)),
                  panel.length_mm]
         for i, (low, high) in enumerate(zip(marks[::2], marks[1::2], strict=True)):
@@ -176,12 +177,12 @@ def leading(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edge
 
 
 def trailing(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edge]:
-    """The trailing-edge stock of each panel."""
+    """The trailing-edge stock of each panel, in lengths between what moves and what pushes."""
     given = shop.definition.wing.trailing_edge
     if given.kind != "stock":
         return
     for panel in wing.panels:
-        lengths = fixed_edge(shop, wing, panel)
+        lengths = between_pushers(fixed_edge(shop, wing, panel), on_edge(bays, panel, rear=True))
         for i, (low, high) in enumerate(lengths):
             letter = f"TE{panel.index + 1}" + ("abcdefgh"[i] if len(lengths) > 1 else "")
             inner, outer = _ends(panel, low, high)
@@ -190,6 +191,28 @@ def trailing(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Edg
                 "wing.trailing_edge", given.material, given.width_mm, panel, inner, outer,
                 (low, high), low == 0 and panel.index == 0 and wing.flat_centre,
             )
+
+
+def between_pushers(
+    lengths: list[tuple[float, float]], own: list[Bay]
+) -> list[tuple[float, float]]:
+    """Lengths of fixed trailing edge without the bays of mounts that sit on it.
+
+    Raises:
+        DesignError: a bay lies where the edge moves.
+    """
+    for bay in own:
+        faces = bay.inner_face_mm, bay.outer_face_mm
+        holds = [(low, high) for low, high in lengths if low <= faces[0] and faces[1] <= high]
+        if not holds:
+            raise DesignError(Problem(
+                "power.stations_mm", f"The mount of motor {bay.index} at {bay.span_mm:g} mm sits"
+                " on a trailing edge that moves.",
+                "Move the motor or the moving surface, or take mount.edge = \"leading\"."))
+        at = lengths.index(holds[0])
+        lengths = [*lengths[:at], (holds[0][0], faces[0]), (faces[1], holds[0][1]),
+                   *lengths[at + 1:]]
+    return lengths
 
 
 def _ends(panel: Panel, low: float, high: float) -> tuple[Pose, Pose]:

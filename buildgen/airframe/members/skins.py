@@ -9,7 +9,7 @@ from functools import cached_property
 import numpy as np
 from shapely.geometry import box
 
-from buildgen.airframe.bays import Bay
+from buildgen.airframe.bays import Bay, on_edge
 from buildgen.airframe.blank import Blank, Cut, solid_cut
 from buildgen.airframe.members.spars import GLUE_GAP_MM, vector
 from buildgen.airframe.shop import Shop
@@ -25,6 +25,8 @@ SHEETING = "Wing: sheeting"
 CAPS = "Wing: capstrips"
 THIN_TAIL_MM = 1.0
 """A rib's tail thinner than this between two sheets breaks off; it ends there instead."""
+LEAST_TAIL_MM = 2.0
+"""Depth of a rib that is glued to the trailing-edge stock; common practice, no source."""
 MOUNT_CLEAR_MM = 13.0
 """Behind the saddle of a mount: its pocket follows the bare ribs so far."""
 
@@ -206,6 +208,10 @@ def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Sheet |
         for panel in wing.panels:
             if given.nose:
                 yield from _nose(shop, wing, panel, bays)
+    if any(b.rear for b in bays) and shop.definition.wing.trailing_edge.kind == "sheet":
+        raise DesignError(Problem(
+            "power.mount.edge", "Mounts do not sit on a trailing edge of sheet.",
+            'Give [wing.trailing_edge] kind = "stock", or mount.edge = "leading".'))
     yield from _trailing(shop, wing)
     if given is not None and given.capstrip_mm:
         yield from _capstrips(shop, wing, bays)
@@ -217,7 +223,7 @@ def _nose(
     given, power = shop.definition.wing.sheeting, shop.definition.power
     assert given is not None
     back = shop.definition.wing.leading_edge.size_mm
-    own = [b for b in bays if b.panel is panel]
+    own = on_edge(bays, panel, rear=False)
     marks = [0.0, *(m for b in own for m in (b.s_mm - b.half_mm, b.s_mm + b.half_mm)),
              panel.length_mm]
     aft, n = nose_aft(shop, wing, panel), panel.index + 1
@@ -262,6 +268,7 @@ def _capstrips(
     """A strip over each rib, between the sheeted nose and the trailing edge."""
     given = shop.definition.wing.sheeting
     assert given is not None
+    _deep_tails(shop, wing)
     number = 0
     for place in places(shop, wing, bays):
         number += 0 if place.single else 1
@@ -279,6 +286,22 @@ def _capstrips(
                 f"capstrip {side}, rib {number}", given.material, given.thickness_mm, CAPS,
                 "wing.sheeting.capstrip_mm", low, high, high - low, rib,
             )
+
+
+def _deep_tails(shop: Shop, wing: WingShape) -> None:
+    """Inset by two capstrips a rib must still have wood to be glued to the trailing-edge stock."""
+    edge = shop.definition.wing.trailing_edge
+    if edge.kind != "stock":
+        return
+    for placed in (p for panel in wing.panels for p in (panel.root, panel.tip)):
+        low, high = placed.height(1 - edge.width_mm / placed.chord_mm)
+        left = high - low - 2 * sheet_mm(shop)
+        if left < LEAST_TAIL_MM:
+            raise DesignError(Problem(
+                "wing.sheeting.capstrip_mm", f"Between the capstrips ribs are {left:.1f} mm deep"
+                f" at the trailing edge, at a chord of {placed.chord_mm:g} mm;"
+                f" they need {LEAST_TAIL_MM:g} mm.",
+                "Take thinner sheet, wider trailing-edge stock, or a sheeted trailing edge."))
 
 
 def _strip_lines(shop: Shop, wing: WingShape, place: Place) -> tuple[Line, Line]:

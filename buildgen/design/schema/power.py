@@ -52,10 +52,13 @@ class Mount(Table):
     """The printed mounts."""
 
     material: str = "petg"
+    edge: Literal["leading", "trailing"] = Field(
+        "leading", description="Of the wing that carries them; at the trailing edge motors push."
+    )
     plate_mm: Length = 4.0
     wall_mm: Length | None = Field(None, description="Walls; three line widths of the printer.")
-    ahead_mm: Length = Field(30.0, description="Motor face ahead of the wing's leading edge.")
-    wrap_mm: Length = Field(14.0, description="How far the saddle reaches back over the nose.")
+    ahead_mm: Length = Field(30.0, description="Motor face beyond that edge.")
+    wrap_mm: Length = Field(14.0, description="How far the saddle reaches over that edge.")
     bay_mm: Length = Field(36.0, description="Between the two ribs that carry a mount.")
     tongue_mm: Length = Field(18.0, description="How far the ribs' tongues reach into it.")
     rib_material: str = "birch-ply"
