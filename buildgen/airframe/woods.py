@@ -29,12 +29,7 @@ def _wing(wing: Wing) -> Iterator[tuple[str, str, str]]:
     yield "wing.ribs.material", wing.ribs.material, "sheet"
     if wing.ribs.root_material:
         yield "wing.ribs.root_material", wing.ribs.root_material, "sheet"
-    for n, spar in enumerate(wing.spar, start=1):
-        yield f"wing.spar[{n}].material", spar.material, ""
-        if spar.kind == "capped":
-            yield f"wing.spar[{n}].web_material", spar.web_material, "sheet"
-            if spar.brace_mm:
-                yield f"wing.spar[{n}].brace_material", spar.brace_material, "sheet"
+    yield from _spars(wing)
     if wing.leading_edge.kind != "none":
         yield "wing.leading_edge.material", wing.leading_edge.material, ""
     if wing.trailing_edge.kind != "none":
@@ -53,6 +48,15 @@ def _wing(wing: Wing) -> Iterator[tuple[str, str, str]]:
         yield "wing.tip_fin.material", wing.tip_fin.material, "sheet"
     if wing.covering:
         yield "wing.covering", wing.covering, "cover"
+
+
+def _spars(wing: Wing) -> Iterator[tuple[str, str, str]]:
+    for n, spar in enumerate(wing.spar, start=1):
+        yield f"wing.spar[{n}].material", spar.material, ""
+        if spar.kind == "capped":
+            yield f"wing.spar[{n}].web_material", spar.web_material, "sheet"
+            if spar.brace_mm:
+                yield f"wing.spar[{n}].brace_material", spar.brace_material, "sheet"
 
 
 def check_materials(shop: Shop) -> None:
