@@ -142,6 +142,11 @@ class Part:
             return None
         return mesh(self.shape)
 
+    @property
+    def skin_area_mm2(self) -> float:
+        """Area of a covering."""
+        return self._skin[0]
+
     @cached_property
     def _skin(self) -> tuple[float, Array, Array]:
         assert isinstance(self.form, Cover)

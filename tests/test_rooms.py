@@ -11,8 +11,9 @@ import buildgen
 
 PACKAGE = Path(buildgen.__file__).parent
 ROOMS = (
-    "problems", "shelf", "section", "aero", "solid", "form", "part", "design", "airframe", "sheets",
-    "prints", "checks", "packet", "pack", "build", "terminal", "cli", "__init__", "__main__",
+    "problems", "shelf", "section", "aero", "drive", "strength", "solid", "form", "part",
+    "design", "airframe", "sheets", "prints", "checks", "packet", "pack", "build", "terminal",
+    "cli", "__init__", "__main__",
 )
 # pack is imported by build when something is written: build.py shows the whole job.
 FILES = sorted(PACKAGE.rglob("*.py"))

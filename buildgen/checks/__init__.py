@@ -6,7 +6,7 @@ here and one line in CHECKS.
 
 from __future__ import annotations
 
-from buildgen.checks import build, fit, fly, power, weigh
+from buildgen.checks import build, fit, fly, power, propel, strong, weigh
 from buildgen.checks.desk import Desk
 from buildgen.checks.report import Check
 
@@ -18,6 +18,9 @@ CHECKS = (
     fly.stall,
     power.tip_gaps,
     power.current,
+    propel.thrust,
+    propel.cruise,
+    strong.spars,
     build.walls,
     build.bounds,
     fit.dry_fit,

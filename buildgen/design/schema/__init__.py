@@ -16,6 +16,7 @@ from buildgen.design.schema.control import Control, ControlServo
 from buildgen.design.schema.equipment import Equipment
 from buildgen.design.schema.fuselage import Fuselage, Station
 from buildgen.design.schema.jig import Jig
+from buildgen.design.schema.loads import Loads, Site
 from buildgen.design.schema.power import Motor, Mount, Power, Propeller
 from buildgen.design.schema.shop import Laser, Offcut, Print, Sheet, Speed, Stock
 from buildgen.design.schema.tail import Surface, Tail
@@ -53,6 +54,8 @@ class Definition(Table):
     laser: Laser = Laser()
     print: Print = Print()
     balance: Balance = Balance()
+    loads: Loads = Loads()
+    site: Site = Site()
 
 
 __all__ = [
@@ -66,6 +69,7 @@ __all__ = [
     "Laser",
     "LeadingEdge",
     "Lightening",
+    "Loads",
     "Motor",
     "Mount",
     "Offcut",
@@ -76,6 +80,7 @@ __all__ = [
     "Ribs",
     "Sheet",
     "Sheeting",
+    "Site",
     "Spar",
     "Speed",
     "Station",

@@ -1,0 +1,1 @@
+"""Electric propulsion: propellers, motors, batteries. Numbers in, numbers out."""

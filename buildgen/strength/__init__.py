@@ -1,0 +1,1 @@
+"""Strength and stiffness of spars: loads, sections, stress. Numbers in, numbers out."""
