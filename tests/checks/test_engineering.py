@@ -46,7 +46,8 @@ def test_the_root_carries_the_lift_less_the_wing(desk: Desk) -> None:
     assert 0.25 * y[-1] < arm < 0.47 * y[-1]
     # A tip beyond the last rib only weighs.
     assert abs(moment[-1]) < 2e-3 * moment[0]
-    assert np.all(np.diff(moment) <= 1e-9)
+    lifted = moment > 0.01 * moment[0]
+    assert np.all(np.diff(moment[lifted]) < 0)
 
 
 def test_twice_the_load_is_half_the_margin(sedge: Build, desk: Desk) -> None:
