@@ -80,7 +80,7 @@ class Build(Kit):
     @cached_property
     def stick_plans(self) -> tuple[StickPlan, ...]:
         """Sticks and tubes cut from stock."""
-        return plan_sticks(self, self._design.shelf, self.kits)
+        return plan_sticks(self, self._design.shelf, self.kits, self._design.definition.stock)
 
     @property
     def worst(self) -> str:

@@ -39,11 +39,25 @@ class Offcut(Table):
         return self
 
 
+class StickStock(Table):
+    """Sticks, tubes or rods at hand by length; overrides the shelf's lengths for them."""
+
+    material: str
+    length_mm: Length
+    section: str | None = Field(None, description="As the stick list names it; without it all.")
+    count: Count | None = Field(None, description="Offcuts at hand; without it as many as needed.")
+
+
 class Stock(Table):
     """What lies on the rack."""
 
     sheet: Annotated[tuple[Sheet, ...], Field(strict=False)] = ()
     offcut: Annotated[tuple[Offcut, ...], Field(strict=False)] = ()
+    stick: Annotated[tuple[StickStock, ...], Field(strict=False)] = ()
+    scarf_ratio: Annotated[float, Strict(), Field(ge=4, le=20)] | None = Field(
+        None, description="Slope of scarf joints in sticks longer than their stock, run over rise;"
+        " without it such a stick is an error. 8 to 12 is common practice.",
+    )
     shelf: str | None = Field(None, description="A shelf file of one's own, beside this one.")
 
 
