@@ -35,6 +35,14 @@ class Shop:
         sheet = self.sheet(material, nominal_mm)
         return sheet.measured_mm if sheet and sheet.measured_mm else nominal_mm
 
+    def sheet_width_mm(self, material: str, nominal_mm: float, path: str) -> float:
+        """Across the grain of the stock that plates of this thickness are cut from."""
+        rack = self.sheet(material, nominal_mm)
+        if rack and rack.width_mm and rack.height_mm:
+            return min(rack.width_mm, rack.height_mm)
+        sizes = self.material(material, path, "sheet").sheets
+        return float(min(sizes[0])) if sizes else float("inf")
+
     def web_mm(self, material: str, thickness_mm: float, path: str) -> float:
         """Least web between holes: the material's, or twice the thickness if that is less."""
         least = self.material(material, path).min_web_mm

@@ -8,7 +8,7 @@ the sheet unrolled between straight rulings, so that its area is that of the she
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from itertools import pairwise
 
@@ -22,6 +22,7 @@ FAR_MM = 200.0
 ROWS = 48
 """Rulings from the fore to the aft edge: 0.01 mm of a nose skin's arc, measured."""
 BESIDE_MM = 4.0
+MOST_STRIPS = 12
 SEAM_MM = 0.04
 """Between a sheet and the mean line, for the glue that joins it to the other one."""
 
@@ -93,6 +94,23 @@ class Skin:
         near, far = unrolled(*rows)
         return Polygon(np.vstack([near, far[::-1]]))
 
+    @property
+    def across_mm(self) -> float:
+        """Least width of a strip of stock that it can be cut from."""
+        box = self.flat.minimum_rotated_rectangle
+        assert isinstance(box, Polygon)
+        ring = np.asarray(box.exterior.coords)
+        return float(np.linalg.norm(np.diff(ring[:3], axis=0), axis=1).min())
+
+    def strips(self, widest_mm: float) -> tuple[Skin, ...]:
+        """Itself, or as many strips along the span as stock of this width asks, fore to aft."""
+        for count in range(1, MOST_STRIPS + 1):
+            lines = [_between(self.fore, self.aft, k / count) for k in range(count + 1)]
+            found = tuple(replace(self, fore=a, aft=b) for a, b in pairwise(lines))
+            if max(strip.across_mm for strip in found) <= widest_mm:
+                return found
+        return found
+
     # ------------------------------------------------------------ the solid
 
     def _curve(self, pose: Pose) -> Array:
@@ -154,6 +172,11 @@ class Skin:
         level += SEAM_MM if self.upper else -SEAM_MM
         limit = np.maximum if self.upper else np.minimum
         return pose(np.column_stack([flat[:, 0], limit(flat[:, 1], level), flat[:, 2]]))
+
+
+def _between(fore: Line, aft: Line, share: float) -> Line:
+    return Line(fore.inner_mm * (1 - share) + aft.inner_mm * share,
+                fore.outer_mm * (1 - share) + aft.outer_mm * share)
 
 
 def unrolled(near: Array, far: Array) -> tuple[Array, Array]:

@@ -12,7 +12,7 @@ from buildgen.airframe.moving import wanted_ribs
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import Panel, WingShape
 from buildgen.problems import DesignError, Problem
-from buildgen.solid import Array
+from buildgen.solid import Array, Pose
 
 BETWEEN_MM = 1.0
 """Between two ribs, for glue and fingers; common practice, no source."""
@@ -43,6 +43,20 @@ class Place:
     def middle_mm(self) -> float:
         """Along its panel."""
         return self.face_mm - self.thickness_mm / 2
+
+
+def outer_face(place: Place) -> Pose:
+    """The plane of a rib's outboard face."""
+    if place.against_inner:
+        start = place.panel.end_plane(False)
+        return Pose(start.rotation, start.origin - place.thickness_mm * start.rotation[:, 2])
+    return place.panel.plane(place.face_mm, place.normal)
+
+
+def inner_face(place: Place) -> Pose:
+    """The plane of a rib's inboard face."""
+    outer = place.panel.plane(place.face_mm, place.normal)
+    return Pose(outer.rotation, outer.origin + outer.rotation[:, 2] * place.thickness_mm)
 
 
 def places(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> list[Place]:

@@ -18,7 +18,12 @@ STRIP = '[wing.leading_edge]\nkind = "strip"\nsize_mm = 6\n'
 SHEETED = STRIP + "[wing.sheeting]\ncapstrip_mm = 8\n"
 CLOSED_TAIL = '[wing.trailing_edge]\nkind = "sheet"\nwidth_mm = 28\n'
 CAPPED = 'kind = "capped"\nmaterial = "spruce"\nwidth_mm = 6\nheight_mm = 3\nweb_mm = [2, 1.5]\n'
+BLOCKS = '[wing.trailing_edge]\nkind = "blocks"\nwidth_mm = 22\n'
 CASES = {
+    "blocks at the tail, capstrips": {
+        "wing": SHEETED + BLOCKS,
+        "panel": "tip_chord_mm = 130\ndihedral_deg = 4\ntwist_deg = -2\nsweep_mm = 50\n"
+                 "[[wing.panel]]\nspan_mm = 150\ntip_chord_mm = 110\nsweep_mm = 30"},
     "tube spar": {"wing": SHEETED},
     "box spar, swept, washed out": {
         "wing": SHEETED + CLOSED_TAIL, "spar": CAPPED + 'web = "both"\nat_tip_chord = 0.33',
@@ -153,3 +158,16 @@ def test_a_brace_is_bent_by_the_dihedral(tmp_path: Path) -> None:
     # Six degrees on either side: both arms rise from the middle.
     rise = ring[(ring[:, 1] < 0) & (np.abs(ring[:, 0]) > 40)][:, 1] - low[0, 1]
     assert rise == pytest.approx(45 * np.tan(np.radians(6)), abs=0.2)
+
+
+def test_sheeting_wider_than_the_stock_is_spliced(tmp_path: Path) -> None:
+    wide = STRIP + "[wing.sheeting]\nto_chord = 0.6\n"
+    kit = kit_of(tmp_path, wing=wide, panel="tip_chord_mm = 150\ntwist_deg = -2\nsweep_mm = 30")
+    strips = [p for p in kit.parts if p.id.startswith("NT1a-") and p.id.endswith("R")]
+    assert len(strips) == 2
+    for part in strips:
+        assert isinstance(part.form, Plate)
+        x0, y0, x1, y1 = part.form.outline.bounds
+        assert min(x1 - x0, y1 - y0) < 100
+    assert ("NT1a-2R", "NT1a-1R") in {(j.inner, j.outer) for j in kit.joints}
+    assert [f.says for f in fit_of(kit).findings] == []

@@ -67,6 +67,7 @@ EDGES = (
     "[wing.trailing_edge]\nkind = \"none\"", STRIP,
     STRIP + "[wing.sheeting]\n[wing.trailing_edge]\nkind = \"sheet\"\nwidth_mm = 28",
     STRIP + "[wing.sheeting]\ncapstrip_mm = 8",
+    "[wing.trailing_edge]\nkind = \"blocks\"\nwidth_mm = 24\n[wing.tip]\nkind = \"sheet\"",
 )
 MOTOR = 'motor = { mass_g = 24, pattern = "16x16" }\n' \
         'propeller = { diameter_mm = 127, pitch_mm = 76 }'

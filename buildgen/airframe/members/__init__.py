@@ -12,7 +12,9 @@ from typing import Protocol
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut
 from buildgen.airframe.members import (
+    blocks,
     braces,
+    capstrips,
     controls,
     edges,
     joiners,
@@ -55,12 +57,14 @@ MAKERS: tuple[Callable[[Shop, WingShape, tuple[Bay, ...]], Iterable[Member]], ..
     joiners.make,
     edges.leading,
     edges.trailing,
+    blocks.make,
     controls.make,
     servos.make,
     torque.make,
     webs.make,
     braces.make,
     skins.make,
+    capstrips.make,
     tip_fins.make,
     tips.make,
     wiring.make,

@@ -14,7 +14,6 @@ from buildgen.airframe.blank import Blank, Cut, solid_cut
 from buildgen.airframe.members.spars import GLUE_GAP_MM, vector
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.skin import Line, Skin
-from buildgen.airframe.stations import HALF, Place, places
 from buildgen.airframe.surface import AFT, Panel, WingShape
 from buildgen.form import Formed, Plate
 from buildgen.part import Joint, Part
@@ -22,11 +21,10 @@ from buildgen.problems import DesignError, Problem
 from buildgen.solid import Pose
 
 SHEETING = "Wing: sheeting"
-CAPS = "Wing: capstrips"
 THIN_TAIL_MM = 1.0
 """A rib's tail thinner than this between two sheets breaks off; it ends there instead."""
-LEAST_TAIL_MM = 2.0
-"""Depth of a rib that is glued to the trailing-edge stock; common practice, no source."""
+TRIM_MM = 2.0
+"""Trimmed from either edge of a sheet of stock; common practice, no source."""
 MOUNT_CLEAR_MM = 13.0
 """Behind the saddle of a mount: its pocket follows the bare ribs so far."""
 
@@ -197,7 +195,7 @@ def nose_aft(shop: Shop, wing: WingShape, panel: Panel) -> Line:
 
 
 def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Sheet | Tail]:
-    """Nose sheets, capstrips and a sheeted trailing edge, as the definition asks."""
+    """Nose sheets and a sheeted trailing edge, as the definition asks."""
     given = shop.definition.wing.sheeting
     if given is not None:
         shop.material(given.material, "wing.sheeting.material", "sheet")
@@ -213,8 +211,6 @@ def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Sheet |
             "power.mount.edge", "Mounts do not sit on a trailing edge of sheet.",
             'Give [wing.trailing_edge] kind = "stock", or mount.edge = "leading".'))
     yield from _trailing(shop, wing)
-    if given is not None and given.capstrip_mm:
-        yield from _capstrips(shop, wing, bays)
 
 
 def _nose(
@@ -234,13 +230,26 @@ def _nose(
         edge = f"LE{n}" + ("abcdefgh"[i // 2] if own else "")
         for upper in (True, False):
             side = "top" if upper else "bottom"
-            yield Sheet(
+            whole = Sheet(
                 shop, Skin(panel, upper, sheet_mm(shop), nose_line(panel, behind), aft,
                            *ends(panel, low, high)),
                 f"N{side[0].upper()}{n}{letter}", f"nose sheeting {side}, panel {n}",
                 given.material, given.thickness_mm, SHEETING, "wing.sheeting", low, high,
                 butts=() if in_bay else (edge,),
             )
+            yield from _spliced(shop, whole)
+
+
+def _spliced(shop: Shop, sheet: Sheet) -> Iterable[Sheet]:
+    """A sheet, or strips of it edge to edge where it is wider than the stock."""
+    widest = shop.sheet_width_mm(sheet.material, sheet.nominal_mm, sheet.key) - 2 * TRIM_MM
+    strips = sheet.skin.strips(widest)
+    before = sheet.butts
+    for k, skin in enumerate(strips, start=1):
+        tag = f"-{k}" if len(strips) > 1 else ""
+        name = f"{sheet.name}, strip {k} of {len(strips)}" if tag else sheet.name
+        yield replace(sheet, skin=skin, id=f"{sheet.id}{tag}", name=name, butts=before)
+        before = (f"{sheet.id}{tag}",)
 
 
 def _trailing(shop: Shop, wing: WingShape) -> Iterable[Sheet | Tail]:
@@ -260,71 +269,6 @@ def _trailing(shop: Shop, wing: WingShape) -> Iterable[Sheet | Tail]:
                 butts=() if upper else (f"ET{n}",),
             )
         yield Tail(panel, thick, given.width_mm)
-
-
-def _capstrips(
-    shop: Shop, wing: WingShape, bays: tuple[Bay, ...]
-) -> Iterable[Sheet]:
-    """A strip over each rib, between the sheeted nose and the trailing edge."""
-    given = shop.definition.wing.sheeting
-    assert given is not None
-    _deep_tails(shop, wing)
-    number = 0
-    for place in places(shop, wing, bays):
-        number += 0 if place.single else 1
-        if place.why == HALF:
-            continue
-        rib = "R0" if place.single else f"R{number}R"
-        fore, aft = _strip_lines(shop, wing, place)
-        low, high = _strip_ends(place, given.capstrip_mm)
-        skin = Skin(place.panel, True, sheet_mm(shop), fore, aft,
-                    *ends(place.panel, low, high))
-        for upper in (True, False):
-            side = "top" if upper else "bottom"
-            yield Sheet(
-                shop, replace(skin, upper=upper), f"K{side[0].upper()}{number}",
-                f"capstrip {side}, rib {number}", given.material, given.thickness_mm, CAPS,
-                "wing.sheeting.capstrip_mm", low, high, high - low, rib,
-            )
-
-
-def _deep_tails(shop: Shop, wing: WingShape) -> None:
-    """Inset by two capstrips a rib must still have wood to be glued to the trailing-edge stock."""
-    edge = shop.definition.wing.trailing_edge
-    if edge.kind != "stock":
-        return
-    for placed in (p for panel in wing.panels for p in (panel.root, panel.tip)):
-        low, high = placed.height(1 - edge.width_mm / placed.chord_mm)
-        left = high - low - 2 * sheet_mm(shop)
-        if left < LEAST_TAIL_MM:
-            raise DesignError(Problem(
-                "wing.sheeting.capstrip_mm", f"Between the capstrips ribs are {left:.1f} mm deep"
-                f" at the trailing edge, at a chord of {placed.chord_mm:g} mm;"
-                f" they need {LEAST_TAIL_MM:g} mm.",
-                "Take thinner sheet, wider trailing-edge stock, or a sheeted trailing edge."))
-
-
-def _strip_lines(shop: Shop, wing: WingShape, place: Place) -> tuple[Line, Line]:
-    edges, given = shop.definition.wing, shop.definition.wing.sheeting
-    assert given is not None
-    back = edges.leading_edge.size_mm if edges.leading_edge.kind == "strip" else 0.0
-    fore = nose_aft(shop, wing, place.panel) if given.nose else nose_line(place.panel, back)
-    tail = edges.trailing_edge
-    return fore, tail_line(place.panel, tail.width_mm if tail.kind != "none" else -2.0)
-
-
-def _strip_ends(place: Place, width_mm: float) -> tuple[float, float]:
-    """Along the panel: centred on the rib, flush with it where the panel ends."""
-    thick = place.thickness_mm
-    if place.single:
-        return 0.0, max(width_mm, thick) / 2
-    if place.against_inner:
-        return 0.0, max(width_mm, thick)
-    length = place.panel.length_mm
-    if place.face_mm > length - 1e-6:
-        return length - max(width_mm, thick), length
-    middle = place.face_mm - thick / 2
-    return middle - width_mm / 2, middle + width_mm / 2
 
 
 def ends(panel: Panel, low: float, high: float) -> tuple[Pose, Pose]:

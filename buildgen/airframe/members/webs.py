@@ -14,7 +14,7 @@ from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut
 from buildgen.airframe.members.spars import GLUE_GAP_MM, STEP, SparRun, pieces, vector
 from buildgen.airframe.shop import Shop
-from buildgen.airframe.stations import HALF, Place, places
+from buildgen.airframe.stations import HALF, Place, inner_face, outer_face, places
 from buildgen.airframe.surface import WingShape
 from buildgen.part import Joint, Part
 from buildgen.solid import Array, Pose
@@ -145,7 +145,7 @@ def _webs(
     steps = spar.web_mm
     own = [r for r in ribs if r.panel in top.run and r.why != HALF]
     for number, (near, far) in enumerate(pairwise(own), start=1):
-        a, b = _outer_face(near), _inner_face(far)
+        a, b = outer_face(near), inner_face(far)
         middle = (near.panel.start_mm + near.face_mm + far.panel.start_mm + far.face_mm) / 2
         inside = first <= near.panel.start_mm + near.face_mm and (
             far.panel.start_mm + far.face_mm <= last + 1e-6)
@@ -159,19 +159,3 @@ def _webs(
             letter = "f" if fore else "a"
             yield Web(shop, top, bottom, a, b, fore,
                       f"W{top.number}{'abcdefgh'[top.piece]}{number}{letter}", thick)
-
-
-def _outer_face(place: Place) -> Pose:
-    """The plane of a rib's outboard face."""
-    if place.against_inner:
-        start = place.panel.end_plane(False)
-        return Pose(start.rotation, start.origin - place.thickness_mm * start.rotation[:, 2])
-    return place.panel.plane(place.face_mm, place.normal)
-
-
-def _inner_face(place: Place) -> Pose:
-    """The plane of a rib's inboard face."""
-    outer = place.panel.plane(place.face_mm, place.normal)
-    return Pose(outer.rotation, outer.origin + outer.rotation[:, 2] * place.thickness_mm)
-
-

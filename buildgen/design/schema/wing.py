@@ -74,8 +74,9 @@ class LeadingEdge(Table):
 class TrailingEdge(Table):
     """Tapered stock behind the ribs."""
 
-    kind: Literal["stock", "sheet", "none"] = Field(
-        "stock", description="Tapered stock, or sheet above and below the ribs."
+    kind: Literal["stock", "sheet", "blocks", "none"] = Field(
+        "stock", description="Tapered stock behind the ribs, sheet above and below them, or"
+        " lengths of triangular stock between ribs that reach the edge."
     )
     width_mm: Length = 20.0
     sheet_mm: Length = Field(1.5, description="Thickness of the sheets.")
