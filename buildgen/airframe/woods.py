@@ -46,6 +46,8 @@ def _wing(wing: Wing) -> Iterator[tuple[str, str, str]]:
         yield "wing.jig.material", wing.jig.material, "sheet"
     if wing.tip_fin:
         yield "wing.tip_fin.material", wing.tip_fin.material, "sheet"
+    if wing.gusset:
+        yield "wing.gusset.material", wing.gusset.material, "sheet"
     if wing.covering:
         yield "wing.covering", wing.covering, "cover"
 

@@ -20,6 +20,13 @@ CLOSED_TAIL = '[wing.trailing_edge]\nkind = "sheet"\nwidth_mm = 28\n'
 CAPPED = 'kind = "capped"\nmaterial = "spruce"\nwidth_mm = 6\nheight_mm = 3\nweb_mm = [2, 1.5]\n'
 BLOCKS = '[wing.trailing_edge]\nkind = "blocks"\nwidth_mm = 22\n'
 CASES = {
+    "gussets, raised and swept": {
+        "wing": "[wing.gusset]\n[wing.trailing_edge]\nwidth_mm = 25\n",
+        "panel": "tip_chord_mm = 150\ndihedral_deg = 4\ntwist_deg = -2\nsweep_mm = 50\n"
+                 "[[wing.panel]]\nspan_mm = 150\ntip_chord_mm = 130\nsweep_mm = 30\n"
+                 "dihedral_deg = 9"},
+    "gussets, level": {
+        "wing": "[wing.gusset]\n[wing.trailing_edge]\nwidth_mm = 25\n"},
     "blocks at the tail, capstrips": {
         "wing": SHEETED + BLOCKS,
         "panel": "tip_chord_mm = 130\ndihedral_deg = 4\ntwist_deg = -2\nsweep_mm = 50\n"

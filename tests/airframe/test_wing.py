@@ -7,9 +7,9 @@ import pytest
 from shapely.geometry import Point, Polygon
 
 from buildgen import Build
-from buildgen.aero.planform import area_mm2
+from buildgen.aero.planform import area_mm2, mean_aerodynamic_chord
 from buildgen.airframe.blank import Bar, Blank, bar_cut, solid_cut
-from buildgen.part import Plate
+from buildgen.part import Cover, Plate
 from buildgen.solid import Placed, Pose, Rod
 
 
@@ -119,3 +119,44 @@ def test_the_tongue_fits_its_socket(marram: Build) -> None:
             rx0, ry0, _, _, ry1, _ = rib.solid.bounding_box()
             inside += rx0 < x1 - 20 and y0 < ry0 and ry1 < y1
         assert inside == 2
+
+
+def test_the_ribs_cut_lie_on_the_ruled_surface(marram: Build) -> None:
+    panel = frame_of(marram).wing.panels[1]
+    seen = 0
+    for part in marram.parts:
+        if part.name != "rib, right" or part.from_key != panel.key:
+            continue
+        assert isinstance(part.form, Plate)
+        whole = part.form.outline.buffer(0)
+        spots = np.asarray(whole.exterior.coords)
+        faces = []
+        for z in (0.0, part.form.thickness_mm):
+            share = float((part.pose((0.0, 0.0, z)) - panel.root.nose) @ panel.along
+                          ) / panel.length_mm
+            points = panel.root.points * (1 - share) + panel.tip.points * share
+            faces.append(Polygon(part.pose.local(points)[:, :2]))
+        near = np.array([min(f.exterior.distance(Point(p)) for f in faces) for p in spots])
+        # the rest are the edges of notches for the leading and the trailing edge
+        assert np.mean(near < 0.01) > 0.8, part.id
+        assert all(f.buffer(0.01).contains(Point(p)) for f in faces for p in spots), part.id
+        seen += 1
+    assert seen >= 3
+
+
+def test_the_mean_chord_of_the_covering_agrees_with_the_closed_formula(kit: Build) -> None:
+    area = moment = 0.0
+    for part in kit.parts:
+        if not (part.id[0] == "C" and part.id.endswith("R") and isinstance(part.form, Cover)):
+            continue
+        points = part.pose(part.form.skin.vertices)
+        half = len(points) // 2
+        ends = points[:half], points[half:]
+        inner, outer = (float(np.ptp(e[:, 0])) for e in ends)
+        length = float(np.hypot(*(ends[1] - ends[0])[:, 1:].mean(axis=0)))
+        chords = np.interp(np.linspace(0, 1, 2001), (0, 1), (inner, outer))
+        area += float(np.trapezoid(chords)) / 2000 * length
+        moment += float(np.trapezoid(chords**2)) / 2000 * length
+    found = mean_aerodynamic_chord(frame_of(kit).wing.plan)
+    # twist and incidence shorten what is seen from above by their cosine
+    assert moment / area == pytest.approx(found.length_mm, rel=2e-3)

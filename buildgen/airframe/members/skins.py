@@ -91,10 +91,14 @@ class Sheet:
                      vector(down * self.skin.panel.up))
 
     def _bevel(self, blank: Blank) -> float:
-        """A rib is cut square to its sheet: what its edge falls short of a tapered surface."""
+        """A rib is cut square to its sheet: what its edge falls short of a surface that tapers,
+        or that rises from a rib at a break."""
         panel = self.skin.panel
         depths = [np.ptp(p.contour[:, 1]) * p.chord_mm for p in (panel.root, panel.tip)]
-        return float(abs(depths[0] - depths[1]) / panel.length_mm * blank.thickness_mm)
+        normal = blank.pose.rotation[:, 2]
+        rise = abs(float(normal @ panel.up)) / abs(float(normal @ panel.along))
+        taper = float(abs(depths[0] - depths[1])) / panel.length_mm
+        return (taper + rise) * blank.thickness_mm
 
     @property
     def joints(self) -> tuple[Joint, ...]:

@@ -102,6 +102,14 @@ class Tip(Table):
     material: str = "balsa"
 
 
+class Gusset(Table):
+    """Triangles of sheet in the corners of strong ribs and the trailing-edge stock."""
+
+    size_mm: Length = Field(15.0, description="Of both sides along rib and stock.")
+    material: str = "balsa"
+    thickness_mm: Length = 2.0
+
+
 class WiringHole(Table):
     """A hole in every rib for the harness; large enough for the plug."""
 
@@ -166,6 +174,9 @@ class Wing(Table):
     tip_fin: TipFin | None = None
     jig: Jig | None = Field(None, description="A cradle that holds each panel on the board.")
     tip: Tip = Tip()
+    gusset: Gusset | None = Field(
+        None, description="At the root, at breaks, at tips and beside motors."
+    )
     wiring_hole: WiringHole | None = None
     covering: str | None = Field("film", description="Name on the shelf; none for a bare wing.")
 
