@@ -93,7 +93,8 @@ def _piece(
 ) -> Piece:
     """One part where it lies."""
     assert isinstance(part.form, Plate)
-    strokes, inside = strokes_of(part, laser.letter_mm, at.label, laser.grain_arrows)
+    strokes, inside = strokes_of(part, laser.letter_mm, at.label, laser.grain_arrows,
+                                 at.flipped)
     marks = moved_strokes(strokes, *_place(at))
     if not inside:
         marks += bare.written(at.label, at.of(part.form.shape2d))

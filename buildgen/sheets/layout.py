@@ -23,7 +23,7 @@ from buildgen.sheets.nest_types import (
 )
 from buildgen.sheets.order import cutting_order
 from buildgen.sheets.relief import relieved
-from buildgen.sheets.seats import with_seats
+from buildgen.sheets.seats import may_turn_over, with_seats
 from buildgen.sheets.sheet import Placement, Sheet
 from buildgen.sheets.stock import kerf_of, stock_of
 from buildgen.shelf import Material, Shelf
@@ -70,7 +70,7 @@ def lay_out(
     taken = frozenset(s.file for s in cut)
     groups: dict[tuple[str, float], list[Part]] = {}
     plates = with_seats(kit) if definition.laser.seat_lines else {}
-    for part in (plates.get(p.id, p) for p in kit.of("cut")):
+    for part in (plates.get(p.id) or _bare(p) for p in kit.of("cut")):
         assert isinstance(part.form, Plate)
         groups.setdefault((part.material, part.form.thickness_mm), []).append(part)
     sheets = [s for s in map(_still_good, cut) if s.parts]
@@ -98,7 +98,8 @@ def _laid(group: Group, definition: Definition) -> list[Sheet]:
     parts = {p.id: relieved(p, laser) for p in group.parts}
     lean = material.lean_deg if material.grain else 0.0
     given = [
-        NestPart(p.id, p.form.shape2d, len(group.copies[p.id]), _angles(p.form), lean, False)
+        NestPart(p.id, p.form.shape2d, len(group.copies[p.id]), _angles(p.form), lean,
+                 laser.turn_over and p.form.may_turn_over)
         for p in parts.values() if isinstance(p.form, Plate)
     ]
     try:
@@ -114,6 +115,12 @@ def _laid(group: Group, definition: Definition) -> list[Sheet]:
         _sheet(replace(blank, file=name), layout, parts, group.copies)
         for layout, name in zip(result.layouts, free, strict=False)
     ]
+
+
+def _bare(part: Part) -> Part:
+    """A plate without lines of its neighbours, with what is known of turning it over."""
+    assert isinstance(part.form, Plate)
+    return replace(part, form=replace(part.form, may_turn_over=may_turn_over(part)))
 
 
 def _still_good(sheet: Sheet) -> Sheet:

@@ -26,7 +26,7 @@ CLEAR_MM = 0.8
 
 
 def strokes_of(
-    part: Part, height_mm: float, label: str = "", arrow: bool = False
+    part: Part, height_mm: float, label: str = "", arrow: bool = False, flipped: bool = False
 ) -> tuple[list[Stroke], bool]:
     """Lettering and lines of a part in its own coordinates; False where its id does not fit.
 
@@ -34,6 +34,7 @@ def strokes_of(
         height_mm: of a capital, where there is room.
         label: what stands for the id, "R3R/2" for the second of several kits; "" for the id.
         arrow: also an arrow along the grain, where there is room beside the lettering.
+        flipped: the part lies upside down: its lettering is mirrored here, to read right there.
     """
     assert isinstance(part.form, Plate)
     label = label or part.id
@@ -42,7 +43,7 @@ def strokes_of(
     if found is None:
         found = id_mark(part, height_mm, label)
         marks += [found] if found else []
-    strokes = [s for m in marks if m.text for s in _strokes(m)]
+    strokes = [s for m in marks if m.text for s in _strokes(m, flipped)]
     strokes += once([s for m in marks if not m.text for s in _strokes(m)])
     if arrow and part.form.grain_deg is not None:
         strokes += grain_arrow(part.form, strokes)
@@ -91,13 +92,13 @@ def _turned(line: Stroke, angle_deg: float) -> Stroke:
     return tuple((float(x), float(y)) for x, y in np.array(line) @ turn)
 
 
-def _strokes(mark: Mark) -> list[Stroke]:
+def _strokes(mark: Mark, flipped: bool = False) -> list[Stroke]:
     strokes = [mark.line] if mark.line else []
     if mark.text:
         a = np.radians(mark.angle_deg)
         turn = np.array([[np.cos(a), np.sin(a)], [-np.sin(a), np.cos(a)]])
         for line in write(mark.text, mark.height_mm):
-            points = np.array(line) @ turn + mark.at
+            points = np.array(line) * (-1 if flipped else 1, 1) @ turn + mark.at
             strokes.append(tuple((float(x), float(y)) for x, y in points))
     return strokes
 

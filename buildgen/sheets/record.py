@@ -50,6 +50,7 @@ def _part_rows(at: Placement, part: Part, thin: bool) -> list[str]:
     outline = whole.simplify(STORED_MM) if thin else whole
     rows = ["[[sheet.part]]", f'id = "{part.id}"']
     rows += [f"kit = {at.kit}"] if at.kit else []
+    rows += ["turned_over = true"] if at.flipped else []
     rows += [f"place = [{at.x_mm!r}, {at.y_mm!r}, {at.rotation_deg!r}]",
              f"density_kg_m3 = {part.density_kg_m3!r}",
              f'outline = "{_line(outline.exterior.coords)}"']
@@ -96,7 +97,8 @@ def _sheet(table: dict[str, Any]) -> Sheet:
         parts.append(Part(p["id"], "cut before", table["material"], form, Pose(), "", "",
                           float(p.get("density_kg_m3", 0.0))))
         x, y, turn = p["place"]
-        places.append(Placement(p["id"], float(x), float(y), float(turn), False,
+        places.append(Placement(p["id"], float(x), float(y), float(turn),
+                                bool(p.get("turned_over", False)),
                                 int(p.get("kit", 0)), False))
     offcut = Polygon(_ring(table["offcut"])) if "offcut" in table else None
     wide, high = table["size_mm"]

@@ -60,16 +60,28 @@ def _marked(plate: Solid, solids: list[Solid]) -> Part:
     assert isinstance(form, Plate)
     free = form.shape2d.buffer(-CLEAR_MM)
     marks: list[Mark] = []
+    seats = False
     for other in solids:
         if other is plate or not plate.near(other):
             continue
         if isinstance(other.part.form, Plate):
-            marks += _seat(plate, other, free, marks)
+            found = _seat(plate, other, free, marks)
+            seats = seats or bool(found)
+            marks += found
         elif form.bend is None and (form.circles or form.outline.interiors):
             marks += _passage(plate, other, free)
     if not marks:
-        return plate.part
-    return replace(plate.part, form=replace(form, marks=(*form.marks, *marks)))
+        return replace(plate.part, form=replace(form, may_turn_over=may_turn_over(plate.part)))
+    return replace(plate.part, form=replace(
+        form, marks=(*form.marks, *marks), may_turn_over=not seats and may_turn_over(plate.part)))
+
+
+def may_turn_over(part: Part) -> bool:
+    """Whether a flat plate may be cut upside down: it carries no mark of one face only."""
+    form = part.form
+    return (isinstance(form, Plate) and form.may_turn_over and form.bend is None
+            and (form.grain_deg or 0.0) % 90.0 == 0.0
+            and all(m.text == part.id for m in form.marks))
 
 
 def _seat(plate: Solid, other: Solid, free: Polygon, before: list[Mark]) -> list[Mark]:

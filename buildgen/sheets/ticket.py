@@ -30,6 +30,7 @@ class Ticket:
             where no speed is stated for this material and thickness.
         outside: parts whose id stands beside them, for it did not fit inside.
         guests: parts that lie in the opening of another.
+        turned: parts that lie upside down, their ids on the face that lies up.
     """
 
     file: str
@@ -47,6 +48,7 @@ class Ticket:
     minutes: float | None
     outside: tuple[str, ...]
     guests: tuple[str, ...]
+    turned: tuple[str, ...] = ()
 
 
 def ticket(sheet: Sheet, kit: Kit, laser: Laser, drawing: Drawing | None = None) -> Ticket:
@@ -66,6 +68,7 @@ def ticket(sheet: Sheet, kit: Kit, laser: Laser, drawing: Drawing | None = None)
         float(inside), float(outside), float(mark), parts, left, waste,
         sheet.leftover_mm[2:], _minutes(sheet, laser, float(inside + outside), float(mark)),
         tuple(p.part for p in pieces if not p.id_inside), tuple(p.part for p in pieces if p.guest),
+        tuple(at.label for at in sheet.placements if at.flipped),
     )
 
 
@@ -102,7 +105,7 @@ def tickets_csv(tickets: Sequence[Ticket]) -> str:
         "sheet", "material", "thickness_mm", "kerf_mm", "parts", "cut_inside_mm",
         "cut_outside_mm", "mark_mm", "parts_g", "left_g", "waste_g", "left_width_mm",
         "left_height_mm", "minutes_without_moves", "ids_beside_parts",
-        "cut_before_their_opening",
+        "cut_before_their_opening", "turned_over",
     ])
     for t in tickets:
         writer.writerow([
@@ -111,7 +114,7 @@ def tickets_csv(tickets: Sequence[Ticket]) -> str:
             f"{t.left_g:.1f}", f"{t.waste_g:.1f}", f"{t.leftover_mm[0]:.0f}",
             f"{t.leftover_mm[1]:.0f}",
             "" if t.minutes is None else f"{t.minutes:.1f}", " ".join(t.outside),
-            " ".join(t.guests),
+            " ".join(t.guests), " ".join(t.turned),
         ])
     return out.getvalue()
 
@@ -135,4 +138,5 @@ def tickets_text(tickets: Sequence[Ticket]) -> str:
     rows += [f"  {t.file}: cut {', '.join(t.guests)} before the opening round it"
              for t in tickets if t.guests]
     rows += [f"  {t.file}: ids stand beside {', '.join(t.outside)}" for t in tickets if t.outside]
+    rows += [f"  {t.file}: upside down lie {', '.join(t.turned)}" for t in tickets if t.turned]
     return "\n".join(rows)

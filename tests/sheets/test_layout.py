@@ -8,17 +8,22 @@ import sys
 from collections import Counter
 from dataclasses import replace
 
+import numpy as np
 import pytest
 import shapely
 from shapely.geometry import Polygon, box
 
 from buildgen.design.schema import Definition, Laser, Offcut, Stock
 from buildgen.design.schema import Sheet as Rack
-from buildgen.part import Kit
+from buildgen.part import Kit, Mark
 from buildgen.problems import DesignError
+from buildgen.sheets.drawing import draw
 from buildgen.sheets.dxf import sheet_dxf
 from buildgen.sheets.layout import Sheet, lay_out
+from buildgen.sheets.letters import write
+from buildgen.sheets.seats import may_turn_over
 from buildgen.sheets.stock import usual_kerf
+from buildgen.sheets.ticket import ticket
 from buildgen.shelf import load_shelf
 from tests.sheets.conftest import plate, small_definition, small_kit, small_sheets
 
@@ -120,6 +125,7 @@ def test_relief_changes_the_part_that_is_cut() -> None:
 
 SCRIPT = """
 import hashlib
+from buildgen.sheets.drawing import draw
 from buildgen.sheets.dxf import sheet_dxf
 from buildgen.sheets.svg import sheet_svg
 from buildgen.design.schema import Laser
@@ -196,3 +202,34 @@ def test_a_longer_search_only_where_it_may_save_a_sheet(
         strips = (*strips, plate("T", box(0, 0, 30, 3)))
     laid(with_(Laser(effort=effort)), replace(small_kit(), parts=strips))  # type: ignore[arg-type]
     assert seen == expected
+
+
+def wedges() -> Kit:
+    """Right-angled wedges, grain along the long leg: two make a rectangle, if one lies over."""
+    wedge = Polygon([(0, 0), (140, 0), (0, 70)])
+    kit = small_kit()
+    return replace(kit, parts=tuple(plate(f"W{n}", wedge) for n in range(1, 9)))
+
+
+def test_plates_turn_over_only_where_asked_and_their_ids_read_right() -> None:
+    flat, = laid(with_(), wedges())
+    assert not any(p.flipped for p in flat.placements)
+    sheet, = laid(with_(Laser(turn_over=True, effort="normal")), wedges())
+    assert any(p.flipped for p in sheet.placements)
+    assert sheet.faults(1.5, 5.0) == []
+    kit = wedges()
+    for at, piece in zip(sheet.placements, draw(sheet, kit, Laser()).pieces, strict=True):
+        upright = np.vstack([np.array(s) for s in write(at.part, 5.0)])
+        here = np.vstack(piece.strokes)
+        turn, *_ = np.linalg.lstsq(np.column_stack([upright, np.ones(len(upright))]), here)
+        assert np.linalg.det(turn[:2]) == pytest.approx(1.0, abs=0.01), at
+    told = ticket(sheet, kit, Laser())
+    assert set(told.turned) == {p.part for p in sheet.placements if p.flipped}
+
+
+def test_a_plate_with_a_mark_of_one_face_stays_on_it() -> None:
+    part = plate("W1", box(0, 0, 30, 20))
+    assert may_turn_over(part)
+    marked = replace(part.form, marks=(Mark(line=((5.0, 5.0), (20.0, 5.0))),))
+    assert not may_turn_over(replace(part, form=marked))
+    assert not may_turn_over(plate("W1", box(0, 0, 30, 20), grain=30.0))

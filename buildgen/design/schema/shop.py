@@ -85,6 +85,10 @@ class Laser(Table):
         True, description="Engrave where neighbours sit and where spars pass."
     )
     grain_arrows: bool = Field(False, description="An arrow along the grain beside each id.")
+    turn_over: bool = Field(
+        False, description="Let plates without marks of one face only lie upside down, their ids"
+        " on the face that lies up; the ticket names them.",
+    )
     effort: Literal["quick", "normal", "high"] = Field(
         "normal", description="Nesting: normal searches longer only where it may save a sheet."
     )
