@@ -2,10 +2,12 @@
 
 from __future__ import annotations
 
+import math
 from xml.sax.saxutils import escape
 
 from buildgen.design.schema import Laser
 from buildgen.part import Kit
+from buildgen.sheets.arcs import Bulges
 from buildgen.sheets.drawing import CUT_INSIDE, CUT_OUTSIDE, MARK, SHEET, Drawing, Piece, draw
 from buildgen.sheets.sheet import Sheet
 from buildgen.solid import Array
@@ -44,16 +46,38 @@ def _insides(drawing: Drawing, height: float) -> list[str]:
     for piece in drawing.pieces:
         found += [f'<circle cx="{x:.4f}" cy="{height - y:.4f}" r="{r:.4f}"/>'
                   for x, y, r in piece.path.circles]
-        found += [_path(ring, height, True) for ring in piece.path.inside]
+        if piece.arcs:
+            found += [_arcs(ring, height) for ring in piece.arcs[1:]]
+        else:
+            found += [_path(ring, height, True) for ring in piece.path.inside]
         found += _outside(piece, height) if piece.guest else []
     return found
 
 
 def _outside(piece: Piece, height: float) -> list[str]:
     """A part's outside, named by the part; with bridges its runs."""
+    if piece.arcs:
+        return [_arcs(piece.arcs[0], height, piece.part)]
     if not piece.outside:
         return [_path(piece.path.outside, height, True, piece.part)]
     return [_path(run, height, False, f"{piece.part}.{n}") for n, run in enumerate(piece.outside)]
+
+
+def _arcs(ring: Bulges, height: float, part: str = "") -> str:
+    """A closed path of lines and arcs; with y down a turn to the left has the sweep flag 0."""
+    x, y, _ = ring[0]
+    steps = [f"M{x:.4f} {height - y:.4f}"]
+    for n, ((x0, y0, bulge), (x1, y1, _)) in enumerate(
+        zip(ring, [*ring[1:], ring[0]], strict=True), start=1
+    ):
+        end = f"{x1:.4f} {height - y1:.4f}"
+        if bulge == 0.0:
+            steps += [f"L{end}"] if n < len(ring) else []  # Z closes with a straight line
+            continue
+        radius = math.hypot(x1 - x0, y1 - y0) * (1 + bulge * bulge) / (4 * abs(bulge))
+        steps.append(f"A{radius:.4f} {radius:.4f} 0 {int(abs(bulge) > 1)} {int(bulge < 0)} {end}")
+    name = f' id="{escape(part)}"' if part else ""
+    return f'<path{name} d="{" ".join(steps)} Z"/>'
 
 
 def _path(points: Array, height: float, close: bool, part: str = "") -> str:

@@ -8,7 +8,7 @@ margin (5 mm), the longest of them 94 s; it is not a proven optimum. The groups 
 a set for the growth of time with the number of parts. No classic strip-packing instance is
 here: none comes with a library at hand, and their data is not known by heart.
 
-The first run after an installation compiles the inner loops once (10 to 17 s were seen).
+The first run after an installation compiles the inner loops once (7 to 17 s were seen).
 """
 
 from __future__ import annotations

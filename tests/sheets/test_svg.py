@@ -2,10 +2,13 @@
 
 from __future__ import annotations
 
+import math
+import re
 import xml.etree.ElementTree as ET
 
 import numpy as np
 import pytest
+from shapely.geometry import Polygon
 
 from buildgen.design.schema import Laser
 from buildgen.sheets.drawing import draw
@@ -48,3 +51,36 @@ def test_bridges_open_the_outside() -> None:
     outside = ET.fromstring(text).findall(f"{SVG}g")[3].findall(f"{SVG}path")
     assert len(outside) == 2 * len(sheet.parts)
     assert not any("Z" in (p.get("d") or "") for p in outside)
+
+
+def arc_points(d: str) -> list[tuple[float, float]]:
+    """A path of M, L and A sampled by the centre of each arc, from the SVG 2 notes on arcs."""
+    points: list[tuple[float, float]] = []
+    for kind, words in re.findall(r"([MLA])([^MLAZ]*)", d):
+        v = [float(w) for w in words.split()]
+        if kind != "A":
+            points.append((v[0], v[1]))
+            continue
+        (x0, y0), (x1, y1), r = points[-1], (v[5], v[6]), v[0]
+        chord = math.hypot(x1 - x0, y1 - y0)
+        off = math.sqrt(max(r * r - chord * chord / 4, 0.0)) * (1 if v[3] == v[4] else -1)
+        cx = (x0 + x1) / 2 + off * (y1 - y0) / chord
+        cy = (y0 + y1) / 2 - off * (x1 - x0) / chord
+        start, end = math.atan2(y0 - cy, x0 - cx), math.atan2(y1 - cy, x1 - cx)
+        turn = (end - start) % (2 * math.pi) - (0 if v[4] else 2 * math.pi)
+        steps = [start + turn * k / 40 for k in range(1, 41)]
+        points += [(cx + r * math.cos(a), cy + r * math.sin(a)) for a in steps]
+    return points
+
+
+def test_arcs_enclose_what_the_lines_enclose() -> None:
+    sheet = next(s for s in small_sheets() if s.material == "balsa")
+    lines = sheet_svg(sheet, small_kit(), Laser())
+    curved = sheet_svg(sheet, small_kit(), Laser(arc_mm=0.01))
+    assert curved.count(" A") > 10
+    for part in ("R1", "R2", "TE1"):
+        found = [Polygon(arc_points(d)) for d in
+                 re.findall(f'<path id="{part}" d="([^"]*)"', lines + curved)]
+        assert len(found) == 2
+        assert not re.search(r"[ML]([\d.]+ [\d.]+) L\1[ \"]", curved)
+        assert found[0].symmetric_difference(found[1]).area < 0.02 * found[0].length, part
