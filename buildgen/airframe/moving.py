@@ -143,6 +143,13 @@ class ControlPlace:
         return np.asarray(
             line.start + line.axis * float(along) / float(line.axis @ self.panel.along))
 
+    def front_mm(self, s_mm: float) -> float:
+        """x of the false spar's front face behind the untwisted leading edge."""
+        given, frame = self.given, self.line.frame(0.0)
+        thick = self.shop.thickness(given.spar_material, given.spar_thickness_mm)
+        back = (given.gap_mm / 2 + thick) / float(frame.rotation[0, 0])
+        return float(self.axis_point(s_mm)[0] - self.panel.nose(s_mm)[0]) - back
+
     @property
     def torque_leg(self) -> tuple[Array, Array]:
         """Where a torque rod bends aft into the surface, and where it ends in it."""

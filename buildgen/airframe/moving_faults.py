@@ -26,10 +26,6 @@ def not_together(shop: Shop) -> Iterator[Problem]:
         yield Problem("wing.trailing_edge.kind",
                       "A sheeted trailing edge does not stop at moving surfaces.",
                       'Take "stock" or "none" on a wing with wing.control.')
-    if wing.sheeting is not None and wing.sheeting.capstrip_mm:
-        yield Problem("wing.sheeting.capstrip_mm",
-                      "Capstrips do not stop at moving surfaces.",
-                      "Take 0 on a wing with wing.control.")
 
 
 def place_faults(

@@ -42,6 +42,11 @@ KINDS = {
     "block": 'kind = "block"\nfrom_mm = 130\nhinges = "tape"\ndown_deg = 25',
     "torque rod": BUILT_UP + '\ndrive = "torque-rod"',
     "torque rod, strip": 'kind = "strip"\nfrom_mm = 130\nwidth_mm = 32\ndrive = "torque-rod"',
+    "under capstrips": BUILT_UP + """
+[wing.leading_edge]
+kind = "strip"
+[wing.sheeting]
+capstrip_mm = 8""",
     "from elsewhere": 'kind = "block"\nfrom_mm = 130\nhorn_side = "up"\ndrive = "none"',
 }
 

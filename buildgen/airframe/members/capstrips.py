@@ -7,6 +7,7 @@ from dataclasses import replace
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.members.skins import Sheet, ends, nose_aft, nose_line, sheet_mm, tail_line
+from buildgen.airframe.moving import ControlPlace, control_places
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.skin import Line, Skin
 from buildgen.airframe.stations import HALF, Place, places
@@ -25,6 +26,7 @@ def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Sheet]:
         return
     _deep_tails(shop, wing)
     number = 0
+    moving = control_places(shop, wing)
     for place in places(shop, wing, bays):
         number += 0 if place.single else 1
         if place.why == HALF:
@@ -32,6 +34,8 @@ def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Sheet]:
         rib = "R0" if place.single else f"R{number}R"
         fore, aft = _strip_lines(shop, wing, place)
         low, high = _strip_ends(place, given.capstrip_mm)
+        for control in (c for c in moving if c.panel is place.panel):
+            low, high, aft = _beside(control, place, low, high, aft)
         skin = Skin(place.panel, True, sheet_mm(shop), fore, aft,
                     *ends(place.panel, low, high))
         for upper in (True, False):
@@ -57,6 +61,23 @@ def _deep_tails(shop: Shop, wing: WingShape) -> None:
                 f" at the trailing edge, at a chord of {placed.chord_mm:g} mm;"
                 f" they need {LEAST_TAIL_MM:g} mm.",
                 "Take thinner sheet, wider trailing-edge stock, or a sheeted trailing edge."))
+
+
+def _beside(
+    control: ControlPlace, place: Place, low: float, high: float, aft: Line
+) -> tuple[float, float, Line]:
+    """A strip ahead of a moving surface ends at its false spar.
+
+    One beside it stays clear of its end, one beside its servo clear of the hatch.
+    """
+    for inner, outer in (control.bay_mm, control.servo_bay_mm or control.bay_mm):
+        if place.middle_mm < inner:
+            high = min(high, inner)
+        elif place.middle_mm > outer:
+            low = max(low, outer)
+    if not control.bay_mm[0] < place.middle_mm < control.bay_mm[1]:
+        return low, high, aft
+    return low, high, Line(control.front_mm(0.0), control.front_mm(control.panel.length_mm))
 
 
 def _strip_lines(shop: Shop, wing: WingShape, place: Place) -> tuple[Line, Line]:

@@ -58,7 +58,7 @@ class Control(Table):
     rod_mm: Length = Field(2.0, description="Wire of a torque rod.")
     horn_side: Literal["down", "up"] = "down"
     horn_material: str = "birch-ply"
-    horn_thickness_mm: Length = 1.5
+    horn_thickness_mm: Length = 2.0
     horn_mm: Extent = Field(0.0, description="Hinge line to pushrod; 0 for skin and 10 mm more.")
 
     @model_validator(mode="after")
