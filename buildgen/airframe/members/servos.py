@@ -16,7 +16,8 @@ from shapely.geometry import Polygon, box
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Blank, Cut, apply, solid_cut
-from buildgen.airframe.members.controls import in_frame, mirrored_joint, other_side
+from buildgen.airframe.members.control_hinges import in_frame
+from buildgen.airframe.members.controls import mirrored_joint, other_side
 from buildgen.airframe.members.spars import STEP
 from buildgen.airframe.moving import ARM_MM, BELOW_MM, BORDER_MM, ControlPlace, control_places
 from buildgen.airframe.shop import Shop

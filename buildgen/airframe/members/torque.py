@@ -14,7 +14,9 @@ import numpy as np
 
 from buildgen.airframe.bays import Bay
 from buildgen.airframe.blank import Bar, Blank, Cut, bar_cut
-from buildgen.airframe.members.controls import GLUE_MM, MOVING, mirrored_joint
+from buildgen.airframe.members.control_hinges import MOVING
+from buildgen.airframe.members.controls import mirrored_joint
+from buildgen.airframe.members.false_spar import GLUE_MM
 from buildgen.airframe.members.spars import STEP, vector
 from buildgen.airframe.moving import ControlPlace, control_places
 from buildgen.airframe.moving_faults import TORQUE_WALL_MM
