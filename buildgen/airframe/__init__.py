@@ -18,6 +18,7 @@ from buildgen.airframe.ribs import make_ribs
 from buildgen.airframe.shop import Shop
 from buildgen.airframe.surface import WingShape, shape_wing
 from buildgen.airframe.tail import SheetTail
+from buildgen.airframe.tails import make_tail
 from buildgen.airframe.woods import check_materials
 from buildgen.design.schema import Definition, Wing
 from buildgen.part import Joint, Kit, Part, Title
@@ -78,9 +79,9 @@ def shape_airframe(
     shop = Shop(definition, shelf)
     check_materials(shop)
     wing = shape_wing(definition.wing, find_sections(definition.wing, folders))
-    seat = SheetTail(shop, wing, None, definition.tail).seat if definition.tail else None
+    seat = make_tail(shop, wing, None, definition.tail).seat if definition.tail else None
     body = Body(shop, wing, definition.fuselage, seat) if definition.fuselage else None
-    tail = SheetTail(shop, wing, body, definition.tail) if definition.tail else None
+    tail = make_tail(shop, wing, body, definition.tail) if definition.tail else None
     drive = Drive(shop, wing, body.nose_seat if body else None)
     return Airframe(shop, wing, body, tail, drive)
 

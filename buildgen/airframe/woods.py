@@ -20,6 +20,7 @@ def named_materials(d: Definition) -> Iterator[tuple[str, str, str]]:
             yield f"fuselage.{part}_material", getattr(d.fuselage, f"{part}_material"), "sheet"
     if d.tail:
         yield "tail.material", d.tail.material, "sheet"
+        yield "tail.block_material", d.tail.block_material, ""
     for table, name in ((d.fuselage, "fuselage"), (d.tail, "tail")):
         if table is not None and table.covering:
             yield f"{name}.covering", table.covering, "cover"

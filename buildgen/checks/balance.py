@@ -60,9 +60,8 @@ def neutral_point(frame: Airframe) -> Neutral:
     if tail.given.arm_mm < 0:
         return Neutral(tailless.with_foreplane_x_mm(plan, tail), mean.length_mm, mean.le_x_mm,
                        span, area, 0.0, tailless.fin_volume(frame), tailless.CANARD_BASIS)
-    assert tail.fin is not None
     half = (tail.tailplane.panel,)
-    tail_area = 2 * tail.tailplane.area_mm2
+    tail_area = tail.level_area_mm2
     arm = tail.given.arm_mm
     aspect = planform.aspect_ratio(plan)
     craft = stability.WingAndTail(
@@ -72,7 +71,7 @@ def neutral_point(frame: Airframe) -> Neutral:
         stability.tail_volume(tail_area, arm, area, mean.length_mm),
         stability.tail_downwash_slope(
             aspect, planform.taper_ratio(plan), planform.sweep_deg(plan, 0.25), arm / span,
-            max(-1.0, min(1.0, tail.level_mm / span)),
+            max(-1.0, min(1.0, tail.height_mm / span)),
         ),
         TAIL_SPEED_RATIO,
     )
@@ -80,9 +79,9 @@ def neutral_point(frame: Airframe) -> Neutral:
     return Neutral(
         mean.le_x_mm + where * mean.length_mm, mean.length_mm, mean.le_x_mm, span, area,
         craft.tail_volume,
-        stability.tail_volume(tail.fin.area_mm2, arm, area, span),
+        stability.tail_volume(tail.upright_area_mm2, arm, area, span),
         "wing and tail with downwash: slopes Helmbold-Polhamus (TN 3911), downwash DATCOM 4.4.1,"
-        " balance of lifts Etkin and Reid; body and propellers left out",
+        f" balance of lifts Etkin and Reid{tail.area_basis}; body and propellers left out",
     )
 
 

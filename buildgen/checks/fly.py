@@ -27,7 +27,7 @@ def tail_volumes(desk: Desk) -> Iterator[Check]:
         ("tail-volume", "Tailplane volume", desk.neutral.tail_volume, TAIL_VOLUME),
         ("fin-volume", "Fin volume", desk.neutral.fin_volume, FIN_VOLUME),
     )
-    if desk.frame.tail is None or desk.frame.tail.fin is None:
+    if desk.frame.tail is None or not desk.frame.tail.upright_area_mm2:
         rows = (("fin-volume", "Volume of the tip fins", desk.neutral.fin_volume,
                  TAILLESS_FIN_VOLUME),) if desk.neutral.fin_volume else ()
     for id, title, value, (low, high) in rows:
