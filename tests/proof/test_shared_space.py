@@ -29,6 +29,6 @@ def test_every_tail_is_clean_in_the_written_model(
     solids = solids_of(path)
     tail = {n: s for n, s in solids.items() if n.startswith(("T", "FT", "V1"))}
     planted = next(n for n in tail if n.startswith("T1"))
-    tail[planted] = tail[planted].translate((0.0, 0.0, -2.0))
+    tail[planted] = tail[planted].translate((0.0, -2.0, 0.0))  # glTF: y is up
     _, found = overlaps(tail)
     assert any(planted in pair for *pair, _ in found)
