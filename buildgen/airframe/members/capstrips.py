@@ -15,8 +15,9 @@ from buildgen.airframe.surface import WingShape
 from buildgen.problems import DesignError, Problem
 
 CAPS = "Wing: capstrips"
-LEAST_TAIL_MM = 2.0
-"""Depth of a rib that is glued to the trailing-edge stock; common practice, no source."""
+LEAST_TAIL_MM = 2.3
+"""Depth of a rib that is glued to the trailing-edge stock: 2 mm2 on either half of a 2 mm centre
+rib, with what twist and play take from it; common practice, no source."""
 
 
 def make(shop: Shop, wing: WingShape, bays: tuple[Bay, ...]) -> Iterable[Sheet]:
