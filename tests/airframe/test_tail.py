@@ -3,6 +3,8 @@
 from __future__ import annotations
 
 import math
+from collections.abc import Callable
+from dataclasses import replace
 from pathlib import Path
 from tempfile import TemporaryDirectory
 
@@ -10,13 +12,15 @@ import numpy as np
 import pytest
 from hypothesis import HealthCheck, Phase, given, settings
 from hypothesis import strategies as st
+from shapely.geometry import Polygon
 
 from buildgen import Build, build, load
 from buildgen.airframe.tail import stations
 from buildgen.checks.balance import neutral_point
 from buildgen.checks.fit import fit_of
-from buildgen.part import Plate
+from buildgen.part import Kit, Part, Plate
 from buildgen.problems import DesignError
+from buildgen.solid import Pose
 
 TEXT = """
 name = "dunlin"
@@ -185,3 +189,40 @@ def test_any_tail_fits_and_keeps_its_area(size: dict[str, float]) -> None:
         if one.id in ("T1R", "T2R"):
             other = kit.by_id[one.id[:-1] + "L"]
             assert other.centroid_mm == pytest.approx(one.centroid_mm * (1, -1, 1))
+
+
+# ---------------------------------------------------------------- planted faults
+
+
+def faults_of(kit: Build, id: str, change: Callable[[Part], Part]) -> set[tuple[str, str, str]]:
+    parts = tuple(change(p) if p.id == id else p for p in kit.parts)
+    return {(f.fault, *sorted((f.inner, f.outer)))
+            for f in fit_of(Kit(kit.title, parts, kit.joints)).findings}
+
+
+def lifted(part: Part, by: tuple[float, float, float]) -> Part:
+    return replace(part, pose=Pose(part.pose.rotation, part.pose.origin + np.array(by)))
+
+
+def test_a_t_tail_without_its_slot_cannot_be_put_on() -> None:
+    kit = made(TAILS["t-tail"])
+
+    def closed(plate: Part) -> Part:
+        assert isinstance(plate.form, Plate)
+        return replace(plate, form=replace(plate.form,
+                                           outline=Polygon(plate.form.outline.exterior)))
+
+    assert ("clash", "T1", "V1") in faults_of(kit, "T1", closed)
+
+
+def test_a_v_tail_off_its_block_has_no_contact() -> None:
+    kit = made(TAILS["v-tail"])
+    found = faults_of(kit, "T1R", lambda p: lifted(p, (0.0, 0.0, 1.0)))
+    assert ("no contact", "T0", "T1R") in found
+    assert all("T1R" in ids for _, *ids in found)
+
+
+def test_an_elevator_too_near_its_tailplane_is_tight() -> None:
+    kit = made(TAILS["conventional"])
+    found = faults_of(kit, "T2", lambda p: lifted(p, (-0.3, 0.0, 0.0)))
+    assert ("tight", "T1", "T2") in found
