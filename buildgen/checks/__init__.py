@@ -6,7 +6,7 @@ here and one line in CHECKS.
 
 from __future__ import annotations
 
-from buildgen.checks import build, fit, fly, power, propel, strong, weigh
+from buildgen.checks import build, fit, fly, motor_out, power, propel, strong, weigh
 from buildgen.checks.desk import Desk
 from buildgen.checks.report import Check
 
@@ -20,6 +20,7 @@ CHECKS = (
     power.current,
     propel.thrust,
     propel.cruise,
+    motor_out.motor_out,
     strong.spars,
     build.walls,
     build.bounds,

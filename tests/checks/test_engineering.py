@@ -111,3 +111,12 @@ def test_the_operating_point_balances_powers() -> None:
 def test_a_propeller_that_does_not_turn_is_refused() -> None:
     with pytest.raises(DesignError):
         static_point(Motor(1000, 0.1, 400.0), Pack(3, 1300), static_estimate(254, 127), 254)
+
+
+def test_motors_further_out_are_harder_to_hold(marram: Build, tmp_path: Path) -> None:
+    far = changed("marram", tmp_path, ("spacing_mm = 320", "spacing_mm = 350"))
+    assert value(far, "motor-out") > value(marram, "motor-out")
+
+
+def test_one_motor_in_the_nose_has_no_such_case(sedge: Build) -> None:
+    assert not [c for c in sedge.checks if c.id == "motor-out"]
