@@ -26,13 +26,13 @@ def said(capsys: pytest.CaptureFixture[str], *argv: str) -> tuple[int, str, str]
         ("tip_chord_mm = 140", "tip_chord_cm = 14", 14, 'Write "tip_chord_mm"'),
         ("root_chord_mm = 165", "root_chord_mm = -165", 13, "above 0"),
         ('section = "clarky"', 'section = "clarkx"', 7, 'Did you mean "clarky"?'),
-        ("outer_mm = 6", "outer_mm = 60", 22, "does not lie inside the section"),
+        ("height_mm = 2", "height_mm = 40", 23, "does not lie inside the section"),
         ("span_mm = 450", 'span_mm = "450"', 12, "without quotes"),
-        ('kind = "tube"', 'kind = "tubbe"', 19, 'Did you mean "tube"?'),
+        ('kind = "capped"', 'kind = "caped"', 19, 'Did you mean "capped"?'),
         ("dihedral_deg = 5", "dihedral_deg = 5\n[[wing.panel]]\nspan_mm = 99\nroot_chord_mm = 99",
          19, "do not meet"),
-        ('pattern = "16x16"', 'pattern = "17x17"', 35, '"17x17"'),
-        ('material = "balsa-light"', 'material = "balsa-lite"', 68, "balsa-light"),
+        ('pattern = "16x16"', 'pattern = "17x17"', 46, '"17x17"'),
+        ('material = "balsa-light"', 'material = "balsa-lite"', 79, "balsa-light"),
     ],
 )
 def test_a_slip_in_a_definition_is_told_with_its_line(
@@ -57,11 +57,11 @@ def test_all_faults_are_told_at_once(
     path = tmp_path / "many.toml"
     path.write_text(
         SEDGE.replace("tip_chord_mm = 140", "tip_cord_mm = 140", 1)
-        .replace("outer_mm = 6", 'outer_mm = "6"').replace("arm_mm = 395", "arm_mm = 0")
+        .replace("height_mm = 2", 'height_mm = "2"').replace("arm_mm = 395", "arm_mm = 0")
     )
     status, _, err = said(capsys, "check", str(path))
     assert status == 2
-    assert [row.split(":")[1] for row in err.strip().splitlines()] == ["14", "20", "67"]
+    assert [row.split(":")[1] for row in err.strip().splitlines()] == ["14", "22", "78"]
 
 
 @pytest.mark.parametrize("kind", ["missing", "folder", "not toml", "binary", "unknown name"])

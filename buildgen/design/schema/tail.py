@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import Annotated, Literal
 
-from pydantic import Field, Strict, model_validator
+from pydantic import Field, Strict, field_validator, model_validator
 
 from buildgen.design.schema.types import Angle, Length, Number, Table
 
@@ -68,10 +68,15 @@ class Tail(Table):
     fin: Surface | None = Field(None, description="None where the wing's tip fins do its work.")
     covering: str | None = "film"
 
+    @field_validator("arm_mm")
+    @classmethod
+    def _clear_of_the_wing(cls, arm_mm: float) -> float:
+        if abs(arm_mm) < 1:
+            raise ValueError("must not be 0: the tailplane would stand in the wing")
+        return arm_mm
+
     @model_validator(mode="after")
     def _fin_behind(self) -> Tail:
-        if abs(self.arm_mm) < 1:
-            raise ValueError("arm_mm must not be 0: the tailplane would stand in the wing")
         if self.arrangement == "v-tail" and self.fin is not None:
             raise ValueError("a V-tail has no fin: leave out tail.fin")
         if self.arrangement != "conventional" and self.arm_mm < 0:
