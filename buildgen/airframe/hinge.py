@@ -153,6 +153,10 @@ def tape(line: HingeLine, id: str, name: str, step: str, key: str) -> Part:
     return Part(id, name, "hinge tape", form, line.frame(line.length_mm / 2), step, key)
 
 
+MARK_FROM_MM = 1.6
+"""A slit's mark begins so far from the hinge line: engraving stays clear of the cut."""
+
+
 def slit_marks(
     line: HingeLine, stations: Sequence[float], plate: Pose, thickness_mm: float
 ) -> tuple[Mark, ...]:
@@ -163,7 +167,7 @@ def slit_marks(
         way = line.frame(s).rotation[:, 0] @ plate.rotation[:, :2]
         reach = LEAF_MM[0] / 2
         for sign in (-1, 1):
-            near, far = (np.array([x, y]) + sign * way * r for r in (1.0, reach))
+            near, far = (np.array([x, y]) + sign * way * r for r in (MARK_FROM_MM, reach))
             found.append(Mark(line=((near[0], near[1]), (far[0], far[1]))))
     return tuple(found)
 

@@ -61,7 +61,7 @@ def test_ply_horn_is_one_piece_with_its_hole_over_the_hinge():
 def test_slits_are_marked_on_both_sides_of_the_line():
     marks = slit_marks(HingeLine(10 * X, 10 * X + 200 * Y, X, Z), (50.0,), Pose(), 3.0)
     xs = sorted(x for m in marks for x, _ in m.line)
-    assert xs == pytest.approx([1.0, 9.0, 11.0, 19.0])
+    assert xs == pytest.approx([1.0, 8.4, 11.6, 19.0])
 
 
 def test_every_horn_names_a_part_of_the_kit(kit):

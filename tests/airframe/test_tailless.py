@@ -137,4 +137,4 @@ def test_a_fin_stands_behind_the_wing(tmp_path, tail):
     path.write_text(CANARD.replace("arm_mm = -400", tail))
     with pytest.raises(DesignError) as caught:
         load(path)
-    assert "tail" in [p.path for p in caught.value.problems]
+    assert any(p.path.startswith("tail") for p in caught.value.problems)
