@@ -143,7 +143,7 @@ def build(design: Design, say: Say = _quiet) -> Build:
         kit = balanced(make_kit(frame, design.title), frame)
     except DesignError as error:
         raise design.placed(error) from None
-    return Build(kit.title, kit.parts, kit.joints, design, frame, say)
+    return Build(kit.title, kit.parts, kit.joints, kit.boards, design, frame, say)
 
 
 def write_coupon(

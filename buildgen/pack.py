@@ -6,6 +6,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Any
 
 from buildgen.packet.package import Package
+from buildgen.packet.plans import write_plans
 from buildgen.packet.write import write_manifest, write_packet
 from buildgen.prints.files import start, start_all
 from buildgen.prints.model import write_glb
@@ -33,6 +34,9 @@ def write_all(build: Build, room: Path) -> None:
     job = start_all(build, room / "prints", room / "model" / "airframe.step")
     try:
         write_sheets(build, room)
+        (room / "plans").mkdir()
+        assert build.design is not None
+        write_plans(build, build.design.definition.packet.paper, room / "plans")
         write_glb(build, room / "model" / "airframe.glb")
         reports = _sound(job.finish())
     except BaseException:

@@ -278,6 +278,23 @@ class Title:
 
 
 @dataclass(frozen=True, eq=False)
+class Board:
+    """A full-size drawing that parts are pinned on.
+
+    Attributes:
+        right, up: the drawing's axes in the aircraft.
+        parts: ids of what is drawn.
+        span_mm: along `right` from where to where it is drawn; None for all of it.
+    """
+
+    name: str
+    right: tuple[float, float, float]
+    up: tuple[float, float, float]
+    parts: tuple[str, ...]
+    span_mm: tuple[float, float] | None = None
+
+
+@dataclass(frozen=True, eq=False)
 class Kit:
     """Every part in its place, in the order of the build.
 
@@ -288,6 +305,7 @@ class Kit:
     title: Title
     parts: tuple[Part, ...]
     joints: tuple[Joint, ...] = ()
+    boards: tuple[Board, ...] = ()
 
     def __post_init__(self) -> None:
         seen: set[str] = set()
@@ -315,6 +333,6 @@ class Kit:
         return tuple(dict.fromkeys(p.step for p in self.parts))
 
 __all__ = [
-    "G_PER_MM3", "Allowance", "Bend", "Bought", "Cover", "Form", "Formed", "Joint", "Kit", "Mark",
-    "Part", "Plate", "PrintSettings", "Printed", "Process", "Stick", "Title",
+    "G_PER_MM3", "Allowance", "Bend", "Board", "Bought", "Cover", "Form", "Formed", "Joint", "Kit",
+    "Mark", "Part", "Plate", "PrintSettings", "Printed", "Process", "Stick", "Title",
 ]

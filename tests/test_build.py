@@ -42,7 +42,9 @@ def kit_of(folder: Path) -> dict:  # type: ignore[type-arg]
 def test_every_promised_file_is_there(packet: Path) -> None:
     names = {p.name for p in packet.iterdir()}
     assert {"packet.pdf", "kit.json", "bom.csv", "parts.csv", "sticks.csv", "sheets", "prints",
-            "model", "manifest.json"} <= names
+            "plans", "model", "manifest.json"} <= names
+    assert {"plans-A4.pdf", "plans-roll.pdf"} == {p.name for p in (packet / "plans").iterdir()}
+    assert (packet / "model" / "airframe.step").stat().st_size > 10_000
     kit = kit_of(packet)
     for sheet in kit["sheets"]:
         assert (packet / "sheets" / sheet["file"]).is_file()

@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from functools import cached_property
 from pathlib import Path
 
+from buildgen.airframe.boards import make_boards
 from buildgen.airframe.covering import glue, plate_covers, wing_covers
 from buildgen.airframe.equipment import Movable, make_equipment
 from buildgen.airframe.fuselage import Body
@@ -111,7 +112,8 @@ def make_kit(frame: Airframe, title: Title) -> Kit:
     more += frame.body.joints if frame.body else ()
     more += frame.tail.joints if frame.tail else ()
     more += drive.joints(ribs.of_bay)
-    return Kit(title, tuple(parts), tuple(more))
+    boards = make_boards(wing, wing_parts, body, tail)
+    return Kit(title, tuple(parts), tuple(more), boards)
 
 
 __all__ = ["Airframe", "make_kit", "shape_airframe"]

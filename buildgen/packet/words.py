@@ -229,3 +229,7 @@ FAULTS = {
     "clash": "one space", "tight": "too tight", "loose": "too loose",
     "no contact": "no contact", "no way in": "no way in",
 }
+
+PLANS = "full-size plans"
+PLAN_TILE = "row {row} of {rows}, column {column} of {columns}"
+PLAN_BAR = "measures 100 mm when printed at 100 %, without fitting to the page"

@@ -39,10 +39,12 @@ class Tile:
     height_mm: float
 
 
-def tiles(width_mm: float, height_mm: float) -> list[Tile]:
-    """Pages that cover a sheet, each overlapping its neighbours, from the lower left."""
-    wide = PAPER_MM[0] - 2 * MARGIN_MM
-    high = PAPER_MM[1] - 2 * MARGIN_MM - FOOT_MM
+def tiles(
+    width_mm: float, height_mm: float, paper_mm: tuple[float, float] = PAPER_MM
+) -> list[Tile]:
+    """Pages that cover a drawing, each overlapping its neighbours, from the lower left."""
+    wide = paper_mm[0] - 2 * MARGIN_MM
+    high = paper_mm[1] - 2 * MARGIN_MM - FOOT_MM
     columns = max(1, math.ceil((width_mm - OVERLAP_MM) / (wide - OVERLAP_MM)))
     rows = max(1, math.ceil((height_mm - OVERLAP_MM) / (high - OVERLAP_MM)))
     return [
@@ -82,7 +84,7 @@ def _page(canvas: Any, sheet: Sheet, drawing: Drawing, tile: Tile, kit: Kit) -> 
         for stroke in piece.strokes:
             _path(canvas, stroke, False)
     canvas.restoreState()
-    _join_marks(canvas, tile)
+    join_marks(canvas, tile)
     canvas.restoreState()
     _foot(canvas, f"{kit.title.line}   {sheet.file}   {sheet.material} {sheet.thickness_mm:g} mm"
           f"   row {tile.row}, column {tile.column}")
@@ -114,7 +116,7 @@ def _path(canvas: Any, points: Any, close: bool) -> None:
     canvas.drawPath(path, stroke=1, fill=0)
 
 
-def _join_marks(canvas: Any, tile: Tile) -> None:
+def join_marks(canvas: Any, tile: Tile) -> None:
     """Crosses in the middle of the overlap: lay those of two pages on each other."""
     canvas.setLineWidth(0.1)
     canvas.setStrokeGray(0.3)

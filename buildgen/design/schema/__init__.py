@@ -17,6 +17,7 @@ from buildgen.design.schema.equipment import Equipment
 from buildgen.design.schema.fuselage import Fuselage, Station
 from buildgen.design.schema.jig import Jig
 from buildgen.design.schema.loads import Loads, Site
+from buildgen.design.schema.packet import Packet
 from buildgen.design.schema.power import Motor, Mount, Power, Propeller
 from buildgen.design.schema.shop import Laser, Offcut, Print, Sheet, Speed, Stock
 from buildgen.design.schema.tail import Surface, Tail
@@ -54,6 +55,7 @@ class Definition(Table):
     laser: Laser = Laser()
     print: Print = Print()
     balance: Balance = Balance()
+    packet: Packet = Packet()
     loads: Loads = Loads()
     site: Site = Site()
 
@@ -73,6 +75,7 @@ __all__ = [
     "Motor",
     "Mount",
     "Offcut",
+    "Packet",
     "Panel",
     "Power",
     "Print",
