@@ -22,6 +22,7 @@ CHECKS = (
     propel.cruise,
     motor_out.motor_out,
     strong.spars,
+    strong.joiners,
     build.walls,
     build.bounds,
     fit.dry_fit,

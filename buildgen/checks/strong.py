@@ -7,6 +7,7 @@ from dataclasses import dataclass
 
 import numpy as np
 
+from buildgen.airframe.members.joiners import make as make_joiners
 from buildgen.airframe.members.spars import SparRun, pieces
 from buildgen.checks.desk import Check, Desk, verdict
 from buildgen.shelf import Material
@@ -111,6 +112,36 @@ def station(desk: Desk, y_mm: float) -> Station:
             group = run.number if run.cap else -1 - number
             groups.setdefault(group, []).append(_piece(desk, run, y_mm))
     return Station(tuple(tuple(g) for g in groups.values()))
+
+
+def joiners(desk: Desk) -> Iterator[Check]:
+    """Wires in the bores at the breaks: they carry what their tubes carry."""
+    shop, loads = desk.frame.shop, desk.definition.loads
+    y, moment = bending(desk)
+    found = []
+    for joint in make_joiners(shop, desk.frame.wing, desk.frame.drive.bays):
+        at = float(joint.outer.meet[1])
+        spars_here = station(desk, at + 1.0)
+        own = [g for g in spars_here.groups if g[0].name == f"spar {joint.outer.number}"]
+        if not own:
+            continue
+        share = stiffness_n_mm2(own[0])[0] / spars_here.stiffness
+        _, second = tube_mm(2 * joint.radius_mm)
+        wire = shop.material(joint.outer.spar.joiner_material, joint.outer.key)
+        stress = float(np.interp(at, y, moment)) * share * joint.radius_mm / second
+        found.append((allowed_mpa(wire, False) / max(stress, 1e-9), at, joint.outer.number))
+    if not found:
+        return
+    least, at, number = min(found)
+    good = least >= loads.safety
+    yield Check(
+        "joiner-stress", f"Strength over stress in the joiners at {loads.limit:g} g",
+        verdict(good), least, loads.safety, "",
+        f"bending of the wire alone by its spar's share of the moment; {METAL_LEFT:g} of the"
+        " wire's strength",
+        "" if good else f"The joiner of spar {number} at {at:.0f} mm from the middle is the"
+        " weakest: take a tube with a wider bore, or a stronger joiner_material.",
+    )
 
 
 def _piece(desk: Desk, run: SparRun, y_mm: float) -> Piece:

@@ -29,7 +29,7 @@ def changed(name: str, folder: Path, *swaps: tuple[str, str]) -> Build:
 
 def checks(made: Build) -> list[Check]:
     """Those of this file alone: the dry fit takes its time."""
-    found = (strong.spars, propel.thrust, propel.cruise, motor_out.motor_out)
+    found = (strong.spars, strong.joiners, propel.thrust, propel.cruise, motor_out.motor_out)
     return [c for check in found for c in check(made.desk)]
 
 
@@ -126,3 +126,15 @@ def test_motors_further_out_are_harder_to_hold(marram: Build, tmp_path: Path) ->
 
 def test_one_motor_in_the_nose_has_no_such_case(sedge: Build) -> None:
     assert not [c for c in checks(sedge) if c.id == "motor-out"]
+
+
+def test_a_joiner_is_a_wire_in_bending(marram: Build) -> None:
+    y, moment = strong.bending(marram.desk)
+    found = value(marram, "joiner-stress")
+    # Two thirds of the whole moment at least goes through the main spar's wire, and not more
+    # than all of it: strength over stress lies between both.
+    at = float(np.interp(420.0, y, moment))
+    wire = next(p for p in marram.parts if p.id == "J1bR")
+    d = float(wire.form.section.split()[0])  # type: ignore[union-attr]
+    alone = 0.9 * 1800 * np.pi * d**3 / 32 / at
+    assert alone <= found <= 1.5 * alone
