@@ -8,15 +8,26 @@ from pathlib import Path
 from typing import Any
 
 import numpy as np
+from shapely.affinity import translate
 from shapely.geometry import MultiPolygon, Polygon, box
 
 from buildgen.packet import words
 from buildgen.packet.pen import PLAIN, use_letters
 from buildgen.packet.view import Direction, eased, silhouette
 from buildgen.part import Board, Formed, Kit, Part, Plate
-from buildgen.sheets.paper import CHECK_MM, FOOT_MM, MARGIN_MM, Tile, join_marks, tiles
+from buildgen.sheets.paper import (
+    CHECK_MM,
+    FOOT_MM,
+    MARGIN_MM,
+    MM,
+    Tile,
+    check_bar,
+    draw_path,
+    join_marks,
+    tiles,
+    window,
+)
 
-MM = 72 / 25.4
 PAPERS = {"A4": (297.0, 210.0), "A3": (420.0, 297.0), "letter": (279.4, 215.9)}
 """On their sides; ISO 216, ANSI Y14.1."""
 CURVE_MM = 0.03
@@ -57,8 +68,6 @@ def _plan(kit: Kit, board: Board) -> Plan | None:
     bounds = np.array([s.bounds for _, s in found])
     x0, y0 = bounds[:, :2].min(axis=0) - BESIDE_MM
     x1, y1 = bounds[:, 2:].max(axis=0) + BESIDE_MM
-    from shapely.affinity import translate
-
     moved = tuple((p, translate(s, -x0, -y0)) for p, s in found)
     return Plan(board.name, moved, float(x1 - x0), float(y1 - y0))
 
@@ -113,10 +122,7 @@ def _tile(
     canvas.scale(MM, MM)
     canvas.translate(MARGIN_MM, MARGIN_MM + FOOT_MM)
     canvas.saveState()
-    clip = canvas.beginPath()
-    clip.rect(0, 0, tile.width_mm, tile.height_mm)
-    canvas.clipPath(clip, stroke=0, fill=0)
-    canvas.translate(-tile.x_mm, -tile.y_mm)
+    window(canvas, tile)
     for part, shape in plan.shapes:
         _outline(canvas, part, shape)
     for part, shape in plan.shapes:
@@ -139,13 +145,7 @@ def _outline(canvas: Any, part: Part, shape: MultiPolygon) -> None:
     canvas.setDash([2.0, 1.2] if over else [])
     for polygon in shape.geoms:
         for line in (polygon.exterior, *polygon.interiors):
-            points = np.asarray(line.coords)
-            path = canvas.beginPath()
-            path.moveTo(*map(float, points[0]))
-            for x, y in points[1:-1]:
-                path.lineTo(float(x), float(y))
-            path.close()
-            canvas.drawPath(path, stroke=1, fill=0)
+            draw_path(canvas, np.asarray(line.coords)[:-1], True)
     canvas.setDash([])
 
 
@@ -171,11 +171,7 @@ def _id(canvas: Any, part: Part, shape: MultiPolygon) -> None:
 def _foot(canvas: Any, text: str) -> None:
     """What the page shows, and the bar to hold a ruler against."""
     canvas.saveState()
-    x, y = MARGIN_MM * MM, MARGIN_MM * MM
-    canvas.setLineWidth(0.4)
-    canvas.line(x, y, x + CHECK_MM * MM, y)
-    for k in range(11):
-        canvas.line(x + k * 10 * MM, y, x + k * 10 * MM, y + (4 if k % 5 else 7))
+    x, y = check_bar(canvas)
     canvas.setFont(PLAIN, 7.5)
     canvas.drawString(x + (CHECK_MM + 4) * MM, y, words.PLAN_BAR)
     canvas.drawString(x, y + 4 * MM, text)

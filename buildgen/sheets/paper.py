@@ -72,23 +72,28 @@ def _page(canvas: Any, sheet: Sheet, drawing: Drawing, tile: Tile, kit: Kit) -> 
     canvas.scale(MM, MM)
     canvas.translate(MARGIN_MM, MARGIN_MM + FOOT_MM)
     canvas.saveState()
-    clip = canvas.beginPath()
-    clip.rect(0, 0, tile.width_mm, tile.height_mm)
-    canvas.clipPath(clip, stroke=0, fill=0)
-    canvas.translate(-tile.x_mm, -tile.y_mm)
+    window(canvas, tile)
     _cuts(canvas, sheet)
     canvas.setLineWidth(0.1)
     canvas.setStrokeGray(0.45)
-    _path(canvas, drawing.outline, True)
+    draw_path(canvas, drawing.outline, True)
     for piece in drawing.pieces:
         for stroke in piece.strokes:
-            _path(canvas, stroke, False)
+            draw_path(canvas, stroke, False)
     canvas.restoreState()
     join_marks(canvas, tile)
     canvas.restoreState()
     _foot(canvas, f"{kit.title.line}   {sheet.file}   {sheet.material} {sheet.thickness_mm:g} mm"
           f"   row {tile.row}, column {tile.column}")
     canvas.showPage()
+
+
+def window(canvas: Any, tile: Tile) -> None:
+    """What is drawn from here on is seen through the tile."""
+    clip = canvas.beginPath()
+    clip.rect(0, 0, tile.width_mm, tile.height_mm)
+    canvas.clipPath(clip, stroke=0, fill=0)
+    canvas.translate(-tile.x_mm, -tile.y_mm)
 
 
 def _cuts(canvas: Any, sheet: Sheet) -> None:
@@ -99,14 +104,15 @@ def _cuts(canvas: Any, sheet: Sheet) -> None:
         assert isinstance(part.form, Plate)
         outline = at.of(part.form.outline)
         for ring in (outline.exterior, *outline.interiors):
-            _path(canvas, np.asarray(ring.coords)[:-1], True)
+            draw_path(canvas, np.asarray(ring.coords)[:-1], True)
         for x, y, r in part.form.circles:
             middle = moved_points(np.array([[x, y]]), at.x_mm, at.y_mm, at.rotation_deg,
                                   at.flipped)[0]
             canvas.circle(float(middle[0]), float(middle[1]), r, stroke=1, fill=0)
 
 
-def _path(canvas: Any, points: Any, close: bool) -> None:
+def draw_path(canvas: Any, points: Any, close: bool) -> None:
+    """A line through points [mm]."""
     path = canvas.beginPath()
     path.moveTo(float(points[0][0]), float(points[0][1]))
     for x, y in points[1:]:
@@ -128,14 +134,20 @@ def join_marks(canvas: Any, tile: Tile) -> None:
             canvas.circle(x, y, 1.5, stroke=1, fill=0)
 
 
-def _foot(canvas: Any, words: str) -> None:
-    """What the page shows, and a line to hold a ruler against."""
-    canvas.saveState()
+def check_bar(canvas: Any) -> tuple[float, float]:
+    """A line of 100 mm to hold a ruler against; its start in points."""
     x, y = MARGIN_MM * MM, MARGIN_MM * MM
     canvas.setLineWidth(0.4)
     canvas.line(x, y, x + CHECK_MM * MM, y)
     for k in range(11):
         canvas.line(x + k * 10 * MM, y, x + k * 10 * MM, y + (4 if k % 5 else 7))
+    return x, y
+
+
+def _foot(canvas: Any, words: str) -> None:
+    """What the page shows, and a line to hold a ruler against."""
+    canvas.saveState()
+    x, y = check_bar(canvas)
     canvas.setFont("Helvetica", 8)
     canvas.drawString(x + (CHECK_MM + 4) * MM, y, "measures 100 mm when printed at 100 %")
     canvas.drawString(x, y + 4 * MM, words.encode("latin-1", "replace").decode("latin-1"))
