@@ -39,12 +39,13 @@ def write_all(build: Build, room: Path) -> None:
         write_plans(build, build.design.definition.packet.paper, room / "plans")
         write_glb(build, room / "model" / "airframe.glb")
         reports = _sound(job.finish())
+        build.say("packet")
+        package = package_of(build, reports)
+        write_packet(package, room)
+        job.end()
     except BaseException:
         job.stop()
         raise
-    build.say("packet")
-    package = package_of(build, reports)
-    write_packet(package, room)
     write_manifest(package, room)
 
 
@@ -71,7 +72,13 @@ def write_coupon(sheet: Sheet, kit: Kit, text: str, laser: Laser, room: Path) ->
 def write_mounts(build: Build, room: Path) -> None:
     """The printed parts."""
     build.say("printing parts: solids")
-    _sound(start(build.of("print"), room).finish())
+    job = start(build.of("print"), room)
+    try:
+        _sound(job.finish())
+        job.end()
+    except BaseException:
+        job.stop()
+        raise
 
 
 def write_sheets(build: Build, room: Path) -> None:

@@ -5,7 +5,7 @@ import sys
 from pathlib import Path
 
 from buildgen.prints.assembly import assembly_text
-from buildgen.prints.brep import KernelMissing
+from buildgen.prints.brep import KernelMissing, kernel
 from buildgen.prints.make import make
 
 
@@ -17,11 +17,15 @@ def main(room: Path, folder: Path) -> None:
     try:
         result = [make(job, folder, built) for job in work.jobs]
         if work.assembly is not None:
-            text = assembly_text(work.name, work.pieces, built)
-            Path(work.assembly).write_text(text, "utf-8", newline="\n")
+            kernel()
     except (KernelMissing, ValueError) as error:
         result = error
-    (room / "result").write_bytes(pickle.dumps(result))
+    # Whole or not at all: the other process looks for this file.
+    (room / "writing").write_bytes(pickle.dumps(result))
+    (room / "writing").rename(room / "result")
+    if work.assembly is not None and not isinstance(result, Exception):
+        text = assembly_text(work.name, work.pieces, built)
+        Path(work.assembly).write_text(text, "utf-8", newline="\n")
 
 
 if __name__ == "__main__":

@@ -6,6 +6,7 @@ import pickle
 import subprocess
 import sys
 import tempfile
+import time
 from collections.abc import Iterable, Sequence
 from dataclasses import dataclass
 from pathlib import Path
@@ -15,6 +16,8 @@ from buildgen.prints.assembly import Piece, pieces_of
 from buildgen.prints.brep import KernelMissing
 from buildgen.prints.make import Job, Report
 from buildgen.problems import DesignError, Problem
+
+POLL_S = 0.02
 
 
 @dataclass(frozen=True, eq=False)
@@ -38,7 +41,7 @@ class Running:
     room: tempfile.TemporaryDirectory[str] | None
 
     def finish(self) -> tuple[Report, ...]:
-        """Wait for it.
+        """Wait for the prints; the whole aircraft may still be in the making, see ``end``.
 
         Raises:
             DesignError: the CAD kernel cannot be loaded.
@@ -46,19 +49,31 @@ class Running:
         """
         if self.process is None or self.room is None:
             return ()
-        _, errors = self.process.communicate()
         result = Path(self.room.name) / "result"
-        try:
-            if self.process.returncode or not result.exists():
-                raise RuntimeError(errors.decode("utf-8", "replace").strip())
-            reports = pickle.loads(result.read_bytes())
-        finally:
-            self.room.cleanup()
+        while self.process.poll() is None and not result.exists():
+            time.sleep(POLL_S)
+        if not result.exists():
+            _, errors = self.process.communicate()
+            raise RuntimeError(errors.decode("utf-8", "replace").strip())
+        reports = pickle.loads(result.read_bytes())
         if isinstance(reports, KernelMissing):
             raise DesignError(Problem("", str(reports)))
         if isinstance(reports, Exception):
             raise RuntimeError(f"a printed part could not be built: {reports}")
         return tuple(reports)
+
+    def end(self) -> None:
+        """Wait for all of it.
+
+        Raises:
+            RuntimeError: the whole aircraft could not be built; with the other process's own words.
+        """
+        if self.process is None or self.room is None:
+            return
+        _, errors = self.process.communicate()
+        self.room.cleanup()
+        if self.process.returncode:
+            raise RuntimeError(errors.decode("utf-8", "replace").strip())
 
     def stop(self) -> None:
         """End it: the packet is not to be finished."""
